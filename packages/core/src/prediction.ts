@@ -1,0 +1,121 @@
+/**
+ * The result of `predict`: plain objects and typed arrays, the same as the JSON of `ringtrue predict --json`.
+ * Units at this door: Å, Å⁻¹, Å², eV, K, s.
+ */
+
+import type { Edge } from './atom/types.js';
+import type { Diagnostic } from './errors.js';
+import type { SelfEnergyName } from './scattering/types.js';
+
+export interface PredictOptions {
+  /** Element symbol, or one atom by its label. */
+  readonly absorber: string;
+  readonly edge: Edge;
+  /** K */
+  readonly temperature: number;
+  /** K; absent: the stated default of the Debye model, with a warning. */
+  readonly debyeTemperature?: number;
+  readonly thermal: 'debye' | 'einstein' | 'springs' | 'none';
+  readonly selfEnergy: SelfEnergyName;
+  /** Longest half path length, Å. */
+  readonly radius: number;
+  readonly maxLegs: number;
+  /** Å⁻¹ */
+  readonly kMax: number;
+  readonly s02: number;
+  /** Shift of the energy origin, eV: k_theory² = k² − e0/3.81. */
+  readonly e0: number;
+  /** Keep every path's own amplitude and phase in the result. */
+  readonly pathSignals: boolean;
+}
+
+export interface PredictedPath {
+  /** "Cu–Cu–Cu", as a chemist reads it. */
+  readonly label: string;
+  readonly legs: number;
+  readonly degeneracy: number;
+  /** Å */
+  readonly halfLength: number;
+  readonly atoms: readonly string[];
+  /** Å² */
+  readonly sigma2: { readonly thermal: number; readonly static: number };
+  /** Part of ∫|k³χ|, all paths' shares summing to 1. */
+  readonly share: number;
+  /** With `pathSignals`: Å⁻¹ grid, |f_eff| in Å, phase in rad. */
+  readonly k?: Float64Array;
+  readonly amplitude?: Float64Array;
+  readonly phase?: Float64Array;
+}
+
+/** Single-scattering paths of like scatterers whose half lengths lie within the resolution of the data. */
+export interface PredictedShell {
+  readonly label: string;
+  readonly element: string;
+  readonly count: number;
+  /** Å */
+  readonly meanDistance: number;
+  /** Å² */
+  readonly sigma2: { readonly thermal: number; readonly static: number; readonly total: number };
+  readonly share: number;
+}
+
+export interface PredictedNeighbour {
+  readonly label: string;
+  readonly element: string;
+  /** Å */
+  readonly distance: number;
+}
+
+export interface Prediction {
+  readonly program: { readonly name: 'ringtrue'; readonly version: string };
+  readonly structure: { readonly file: string; readonly format: string; readonly atoms: number; readonly title: string };
+  readonly options: PredictOptions;
+  readonly absorbers: readonly {
+    readonly label: string;
+    readonly element: string;
+    readonly weight: number;
+    readonly neighbours: readonly PredictedNeighbour[];
+  }[];
+  readonly scattering: {
+    /** bohr */
+    readonly atoms: readonly {
+      readonly element: string;
+      readonly role: 'absorber' | 'scatterer';
+      readonly muffinTinRadius: number;
+      readonly normanRadius: number;
+    }[];
+    readonly interstitialPotentialEv: number;
+    readonly fermiLevelEv: number;
+    /** Å⁻¹ and Å */
+    readonly k: Float64Array;
+    readonly meanFreePath: Float64Array;
+  };
+  /** 0.05-spaced, Å⁻¹, and the prediction on it. */
+  readonly k: Float64Array;
+  readonly chi: Float64Array;
+  readonly paths: readonly PredictedPath[];
+  readonly shells: readonly PredictedShell[];
+  readonly transform: {
+    readonly R: Float64Array;
+    readonly real: Float64Array;
+    readonly imaginary: Float64Array;
+    readonly window: {
+      readonly name: string;
+      readonly kMin: number;
+      readonly kMax: number;
+      readonly sill: number;
+      readonly kWeight: number;
+    };
+  };
+  /** Bound on the share of the signal left out by path pruning. */
+  readonly neglected: number;
+  readonly warnings: readonly Diagnostic[];
+  /** s */
+  readonly timing: {
+    readonly atoms: number;
+    readonly potentials: number;
+    readonly phases: number;
+    readonly paths: number;
+    readonly total: number;
+  };
+}
