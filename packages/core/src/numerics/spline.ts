@@ -53,7 +53,7 @@ export class CubicSpline {
     const last = x.length - 2;
     if (perStep > 0) {
       const i = Math.floor((t - x[0]!) * perStep);
-      return i < 0 ? 0 : i > last ? last : i;
+      return i < 0 ? 0 : Math.min(i, last);
     }
     let low = 0;
     let high = last + 1;

@@ -48,7 +48,7 @@ export interface ExchangeCorrelation {
   evaluate(rho: Float64Array, k: number, re: Float64Array, im: Float64Array): void;
 }
 
-export type SelfEnergyName = 'mean' | 'hedin-lundqvist' | 'dirac-hara' | 'ground-state';
+export type SelfEnergyName = 'mean' | 'hedin-lundqvist' | 'dirac-hara';
 
 /** All that paths need to know of the potentials, on the scattering room's own coarse k grid. */
 export interface ScatteringTable {
