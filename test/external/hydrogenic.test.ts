@@ -1,6 +1,6 @@
 // Point-nucleus levels in closed form (Sommerfeld–Dirac and Schrödinger), evaluated by mpmath with c = 137.035999084.
 import { test } from 'vitest';
-import { fillHalfPoints, logMesh, RadialSolver } from '../../packages/core/src/atom/radialLevel.js';
+import { fillHalfPoints, logMesh, RadialSolver } from '../../packages/core/src/atom/radial-level.js';
 import { expectNear } from '../support/expect-near.js';
 import { readTable } from '../support/table.js';
 

@@ -9,7 +9,7 @@
  * the closed form 3(1 − cos x)/x², the thermal excess vanishes smoothly above w = 40 T/θ and is integrated to there.
  * Good for close-packed metals; the first shells of covalent and ionic solids vibrate with 0.55–0.65 of it.
  */
-import { gaussLegendreUnit } from './gauss-legendre.js';
+import { gaussLegendreUnit } from '../numerics/gauss-legendre.js';
 import { HBAR2_PER_U_KB } from './oscillator.js';
 import { checkMasses, checkPositive, checkTemperature, routeGradient } from './route.js';
 import type { ThermalModel, ThermalVertex } from './types.js';

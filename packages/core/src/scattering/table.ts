@@ -7,7 +7,7 @@
 import type { Edge } from '../atom/types.js';
 import { perBohrFromPerAngstrom, SPEED_OF_LIGHT } from '../constants.js';
 import { checkRunning, type Running } from '../errors.js';
-import { SphereSolver } from './phaseShifts.js';
+import { SphereSolver } from './phase-shifts.js';
 import type { ExchangeCorrelation, MuffinTin, ScatteringTable } from './types.js';
 
 /** Highest angular momentum ever carried. */

@@ -5,7 +5,7 @@
  * r_l = j_l/j_{l−1} are carried downward, r_l = z/(2l + 1 − z r_{l+1}) (DLMF 10.10.1), and then multiplied up from the larger
  * of j_0 = sin z/z and j_1 = (j_0 − cos z)/z.
  *
- * Measured against 40-digit values for l ≤ 25, |z| 0.3 … 60 (test/external/complexBessel.test.ts): 1e-12 of |h_l| and |j_l|.
+ * Measured against 40-digit values for l ≤ 25, |z| 0.3 … 60 (test/external/complex-bessel.test.ts): 1e-12 of |h_l| and |j_l|.
  */
 export interface BesselOrders {
   readonly jRe: Float64Array;

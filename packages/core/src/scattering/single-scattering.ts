@@ -10,7 +10,7 @@
  *   l0 = 2: (3/2) l(l − 1)/(2l − 1) h_{l−2}² + l(l + 1)(2l + 1)/((2l − 1)(2l + 3)) h_l² + (3/2)(l + 1)(l + 2)/(2l + 3) h_{l+2}²
  */
 import { bohrFromAngstrom } from '../constants.js';
-import { hankelUp } from '../numerics/complexBessel.js';
+import { hankelUp } from '../numerics/complex-bessel.js';
 import type { ScatteringTable } from './types.js';
 
 /** Weights of h²_{l−l0}, h²_{l−l0+2}, …, h²_{l+l0}; those of negative order are 0. */

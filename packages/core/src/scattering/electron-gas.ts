@@ -9,7 +9,7 @@
  *                                           + [y2 > E_F] ln|(E − ω − max(y1, E_F))/(E − ω − y2)| }
  *   Im Σ(p)   = −(ω_p/4p) ln[g(q1)/g(q_hi)],   g(q) = (2ω_p² + k_F² q²/3 + 2 ω_p ω_q)/q²
  */
-import { gaussLegendre } from '../numerics/gaussLegendre.js';
+import { gaussLegendreUnit } from '../numerics/gauss-legendre.js';
 
 /** k_F rs. */
 export const KF_RS = Math.cbrt((9 * Math.PI) / 4);
@@ -21,7 +21,7 @@ export function diracHara(x: number): number {
   return (-1 / Math.PI) * (1 + ((1 - x * x) / (2 * x)) * Math.log((x + 1) / distance));
 }
 
-const RULE = gaussLegendre(16);
+const RULE = gaussLegendreUnit(16);
 
 /**
  * Re Σ_c at p, hartree, by quadrature between all the points where a logarithm is singular.
@@ -69,7 +69,7 @@ const logRatio = (a: number, b: number): number => Math.log((Math.abs(a) + 1e-30
 
 /** ∫_a^b f with q = a + (b − a)(10s³ − 15s⁴ + 6s⁵): a logarithm at an end becomes s² ln s, which the rule takes to n⁻⁶. */
 function softEnded(f: (q: number) => number, a: number, b: number): number {
-  const { nodes, weights } = RULE;
+  const { x: nodes, w: weights } = RULE;
   let sum = 0;
   for (let i = 0; i < nodes.length; i++) {
     const s = nodes[i]!;

@@ -6,7 +6,7 @@
  * Nucl. Instrum. Meth. 207, 437 (1983); Tranquada & Ingalls, Phys. Rev. B 28, 3520 (1983)) and the third cumulant.
  */
 import { EV_PER_K_SQUARED } from '../constants.js';
-import type { InterstitialWave, PathSignal } from './pathSignal.js';
+import type { InterstitialWave, PathSignal } from './path-signal.js';
 
 /** What disorder does to one path. */
 export interface PathDisorder {

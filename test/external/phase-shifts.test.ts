@@ -1,7 +1,7 @@
 // Phase shifts with known values: wells and exponential in closed form (mpmath), Yukawa by the variable-phase equation, a
 // screened nucleus of Z = 8 and 29 by two independent integrations. Non-relativistic: c = ∞.
 import { expect, test } from 'vitest';
-import { SphereSolver } from '../../packages/core/src/scattering/phaseShifts.js';
+import { SphereSolver } from '../../packages/core/src/scattering/phase-shifts.js';
 import { expectNear } from '../support/expect-near.js';
 import { readTable } from '../support/table.js';
 

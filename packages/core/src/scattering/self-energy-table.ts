@@ -1,5 +1,5 @@
 /**
- * Re Σ_HL = Σ_x + Re Σ_c of the plasmon-pole electron gas by interpolation. The exact quadrature (electronGas.ts) takes 13 µs; a potential
+ * Re Σ_HL = Σ_x + Re Σ_c of the plasmon-pole electron gas by interpolation. The exact quadrature (electron-gas.ts) takes 13 µs; a potential
  * needs it at 10⁵ points. Built once at first use, in about 0.1 s.
  *
  * Re Σ has a cusp where plasmon emission opens (x = p/k_F = x_c): the table has a patch of Re Σ/k_F on either side of it and never
@@ -8,7 +8,7 @@
  * tabulated and not Σ_c, since only in the sum do the (x − 1) ln|x − 1| terms at the Fermi momentum cancel. Local cubic
  * (four-point) interpolation in both directions.
  */
-import { correlationReal, diracHara, KF_RS, plasmonThreshold } from './electronGas.js';
+import { correlationReal, diracHara, KF_RS, plasmonThreshold } from './electron-gas.js';
 
 const LN_RS_MIN = Math.log(0.008);
 const LN_RS_MAX = Math.log(20);
@@ -49,7 +49,7 @@ function build(): Table {
 /**
  * Re Σ_HL(p) and its value at k_F, hartree, as [at p, at k_F] into out.
  *
- * Measured against the quadrature: see selfEnergyTable.test.ts.
+ * Measured against the quadrature: see test/external/electron-gas.test.ts.
  *
  * @param rs  bohr; clamped to 0.008 … 20: denser, Σ is negligible beside the potential; thinner, there is hardly any density
  * @param x   p/k_F ≥ 1

@@ -7,8 +7,8 @@ import {
   imaginarySelfEnergy,
   KF_RS,
   plasmonThreshold,
-} from '../../packages/core/src/scattering/electronGas.js';
-import { tabulatedSelfEnergy } from '../../packages/core/src/scattering/selfEnergyTable.js';
+} from '../../packages/core/src/scattering/electron-gas.js';
+import { tabulatedSelfEnergy } from '../../packages/core/src/scattering/self-energy-table.js';
 import { expectNear } from '../support/expect-near.js';
 import { seededRandom } from '../support/random.js';
 import { readTable } from '../support/table.js';

@@ -14,7 +14,7 @@ import { ConvergenceError } from '../errors.js';
 import { AndersonMixer } from '../numerics/anderson.js';
 import { groundConfiguration, shellName } from './configurations.js';
 import { type LocalFunctional, localFunctional } from './functional.js';
-import { fillHalfPoints, type LogMesh, logMesh, type MeshPotential, RadialSolver } from './radialLevel.js';
+import { fillHalfPoints, type LogMesh, logMesh, type MeshPotential, RadialSolver } from './radial-level.js';
 import type { AtomOptions, Edge, FreeAtom } from './types.js';
 
 /** r_i = exp(−14 + i/160): 8e-7 … 80 bohr. With steps of 1/100 the Schrödinger total of platinum was off by 9e-6 Ha. */

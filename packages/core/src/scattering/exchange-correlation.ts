@@ -12,8 +12,8 @@
  */
 import { fermiMomentum, vxcBarthHedin, wignerSeitzRadius } from '../atom/index.js';
 import { hartreeFromEv } from '../constants.js';
-import { diracHara, imaginarySelfEnergy, plasmonThreshold } from './electronGas.js';
-import { tabulatedSelfEnergy } from './selfEnergyTable.js';
+import { diracHara, imaginarySelfEnergy, plasmonThreshold } from './electron-gas.js';
+import { tabulatedSelfEnergy } from './self-energy-table.js';
 import type { ExchangeCorrelation, SelfEnergyName } from './types.js';
 
 /** Parts of the two real differences, part of the plasmon loss, constant loss in hartree. */

@@ -12,7 +12,7 @@
  * Classical Runge–Kutta on the logarithmic mesh, each step divided so that the local phase advances by less than
  * PHASE_STEP; the potential between mesh points by four-point Lagrange interpolation of rV.
  */
-import { type BesselOrders, besselOrders, sphericalBesselHankel } from '../numerics/complexBessel.js';
+import { type BesselOrders, besselOrders, sphericalBesselHankel } from '../numerics/complex-bessel.js';
 
 /** Advance of the local phase in one sub-step, rad; 0.25 changes χ by 2e-4. */
 export const PHASE_STEP = 0.06;

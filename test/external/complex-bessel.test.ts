@@ -1,6 +1,6 @@
 // Spherical Bessel and Hankel functions against 40-digit values (mpmath), and hard-sphere phase shifts in closed form.
 import { expect, test } from 'vitest';
-import { besselOrders, sphericalBesselHankel } from '../../packages/core/src/numerics/complexBessel.js';
+import { besselOrders, sphericalBesselHankel } from '../../packages/core/src/numerics/complex-bessel.js';
 import { expectNear } from '../support/expect-near.js';
 import { readTable } from '../support/table.js';
 
