@@ -16,6 +16,8 @@ export interface Cell {
   readonly alpha: number;
   readonly beta: number;
   readonly gamma: number;
+  /** Cell vectors in the file's axes, Å, where these are not the standard ones (a along x, b in the xy plane). */
+  readonly vectors?: readonly [a: Vec3, b: Vec3, c: Vec3];
 }
 
 /** x' = rotation · x + translation in fractional coordinates; rotation row-major (9). */
@@ -49,6 +51,8 @@ export interface Atom {
   readonly positionSu?: Vec3;
   /** Alternate conformation or disorder-group label; absent when there is one position only. */
   readonly alternate?: string;
+  /** Disorder assembly of a CIF; alternates of different assemblies are chosen independently. */
+  readonly assembly?: string;
   readonly residue?: Residue;
   readonly formalCharge?: number;
   /** Line of the file the atom came from, from 1. */
@@ -75,6 +79,8 @@ export interface Structure {
   /** Further frames (xyz) or models (pdb, mmcif), in file order; empty for one frame. */
   readonly moreFrames: readonly (readonly Atom[])[];
   readonly cell?: Cell;
+  /** Which cell vectors repeat; absent: all three where there is a cell (a slab in extended XYZ repeats in two). */
+  readonly repeats?: readonly [boolean, boolean, boolean];
   /** Fractional operators, identity first; only the identity where there is no crystal. */
   readonly operators: readonly SymmetryOperator[];
   readonly spaceGroup?: string;
@@ -111,6 +117,8 @@ export interface Site {
   readonly atoms: readonly SiteAtom[];
   /** Å: the cluster is complete to here (Infinity for a molecule that lies wholly inside). */
   readonly radius: number;
+  /** Which alternate conformations this cluster is made of ("A", "A+B"); absent when there is one only. */
+  readonly variant?: string;
   /** True when the cluster was cut from a crystal. */
   readonly periodic: boolean;
   /** Atoms per Å³ of the crystal, hydrogens left out; absent without a crystal. */

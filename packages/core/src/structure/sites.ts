@@ -1,0 +1,261 @@
+/** From a Structure to its absorbing sites: each different surrounding of the absorber once, with the weight the measurement gives it. */
+import { elementBySymbol, elementSymbol, hasEdge } from '../elements/index.js';
+import { type Diagnostic, InputError } from '../errors.js';
+import { isMetal } from './bonding.js';
+import { distance } from './cell.js';
+import { type Combination, combinations, type Disorder, findDisorder } from './disorder-groups.js';
+import { type Image, Images } from './images.js';
+import { checkSite, checkStructure } from './site-checks.js';
+import type { Atom, Site, SiteAtom, Structure } from './types.js';
+
+export interface SiteOptions {
+  /** Element symbol (all its atoms, averaged) or one atom by name or label; absent: every element that has an edge, metals first. */
+  readonly absorber?: string;
+  /** Total radius of the clusters, Å; potentials want 7 Å more than the longest path. */
+  readonly radius: number;
+  /** Å: alternate conformations this near are all combined; farther ones show the likeliest. Default: radius, at most 6. */
+  readonly variantRadius?: number;
+  /** Most combinations of alternates kept a site, the likeliest ones. Default 32. */
+  readonly maxVariants?: number;
+}
+
+/** Å: two atoms this close cannot both be there. */
+const TOO_CLOSE = 0.5;
+
+/**
+ * The absorbing sites and their clusters, weights summing to 1 over each absorbing element. Atoms equivalent by symmetry are one
+ * site; so are atoms of a crystal listed apart but with the same surroundings to 0.0005 Å. Alternate conformations give one site
+ * a combination (`variant`), weighted by occupancy. Cost: linear in the atoms of the cell, plus the atoms found.
+ *
+ * @throws {InputError} absorber not present, atoms closer than 0.5 Å, no element with an edge, radius not above 0
+ */
+export function findSites(structure: Structure, options: SiteOptions): readonly Site[] {
+  const { radius } = options;
+  if (!(radius > 0 && radius < Infinity)) throw new InputError(`the cluster radius is ${radius} Å; it must be above 0`);
+  const images = new Images(structure);
+  const disorder = findDisorder(structure, images);
+  const shared = [...images.diagnostics, ...checkStructure(structure)];
+  const sites: Site[] = [];
+  for (const sources of chooseAbsorbers(structure, options.absorber)) {
+    const found = sources.flatMap((source) => sitesOf(structure, source, images, disorder, options, shared));
+    sites.push(...normalised(images.isCrystal ? mergeEquivalent(found) : found));
+  }
+  return sites;
+}
+
+/** A structure whose present atoms are those of a later frame (xyz) or model (pdb, mmcif); 0 is the first. */
+export function frameOf(structure: Structure, frame: number): Structure {
+  if (frame === 0) return structure;
+  const atoms = structure.moreFrames[frame - 1];
+  if (!atoms) throw new InputError(`there is no frame ${frame + 1}; the file has ${structure.moreFrames.length + 1}`);
+  return { ...structure, atoms };
+}
+
+/** What a chemist calls an atom: "Fe1", or "ZN ZN A201" in a macromolecule. */
+export function atomLabel(atom: Atom): string {
+  const { residue } = atom;
+  if (!residue) return atom.name;
+  return `${atom.name} ${residue.name} ${residue.chain}${residue.number}${residue.insertion}`;
+}
+
+/** Indices of the absorbing atoms, one list an element. */
+function chooseAbsorbers({ atoms }: Structure, absorber: string | undefined): number[][] {
+  const byElement = new Map<string, number[]>();
+  atoms.forEach((atom, source) => {
+    if (atom.occupancy === 0) return;
+    const list = byElement.get(atom.element);
+    if (list) list.push(source);
+    else byElement.set(atom.element, [source]);
+  });
+  if (absorber === undefined) {
+    const elements = [...byElement.keys()].filter((element) => hasEdge(elementBySymbol(element).Z));
+    if (elements.length === 0) throw new InputError(`no element here has an edge for EXAFS (Na or heavier); there are ${[...byElement.keys()].join(', ')}`);
+    const rank = (element: string) => (isMetal(element) ? 1000 : 0) + elementBySymbol(element).Z;
+    return elements.sort((a, b) => rank(b) - rank(a)).map((element) => byElement.get(element)!);
+  }
+  const wanted = absorber.trim();
+  const exact = byElement.get(wanted);
+  if (exact) return [exact];
+  const labelled = atoms.flatMap((atom, source) => (atom.occupancy > 0 && (atomLabel(atom) === wanted || atom.name === wanted) ? [source] : []));
+  const labelledElements = new Set(labelled.map((source) => atoms[source]!.element));
+  if (labelled.length > 0 && labelledElements.size === 1) return [labelled];
+  const element = byElement.get(elementSymbol(wanted) ?? '');
+  if (element) return [element];
+  if (labelled.length > 0) throw new InputError(`"${wanted}" names atoms of several elements (${[...labelledElements].join(', ')}); give the full label, like "${atomLabel(atoms[labelled[0]!]!)}"`);
+  throw new InputError(`there is no ${wanted} in the structure: neither an element nor an atom label; it holds ${[...byElement.keys()].join(', ')}`);
+}
+
+function sitesOf(structure: Structure, source: number, images: Images, disorder: Disorder, options: SiteOptions, shared: readonly Diagnostic[]): Site[] {
+  const { radius, variantRadius = Math.min(radius, 6), maxVariants = 32 } = options;
+  const { atoms } = structure;
+  const absorber = atoms[source]!;
+  const centre = images.position(source);
+  const around = images.around(centre, radius).filter((image) => images.occupancy[image.source]! > 0);
+  const own = around.find((image) => image.source === source && image.distance < 1e-6)!;
+  const group = disorder.groupOf[source]!;
+  const isLabelled = group >= 0 && absorber.alternate !== undefined;
+  const fixed = isLabelled ? { group, label: disorder.labelOf(source) } : undefined;
+  const { list, dropped } = combinations(disorder, around, variantRadius, fixed, maxVariants);
+  const density = images.density(atoms);
+  const isWhole = !images.isCrystal && around.length === atoms.reduce((n, _, i) => n + Number(images.occupancy[i]! > 0), 0);
+  const diagnostics = [...shared];
+  if (dropped > 1e-9) {
+    diagnostics.push({
+      code: 'variants-dropped',
+      message: `${atomLabel(absorber)}: only the ${list.length} likeliest combinations of alternate conformations are kept, ${(100 * (1 - dropped)).toFixed(0)} % of the whole`,
+    });
+  }
+  return list.map((combination) => {
+    const said: Diagnostic[] = [];
+    const others = pickAtoms(structure, around, own, combination, disorder, images, said);
+    const self: SiteAtom = { ...siteAtom(absorber, own, occupancyOf(source, disorder, images, fixed !== undefined)), symmetry: 'x,y,z', distance: 0 };
+    const site: Site = {
+      label: atomLabel(absorber) + (absorber.alternate === undefined ? '' : ` (${absorber.alternate})`),
+      element: absorber.element,
+      weight: (images.multiplicity[source]! * images.occupancy[source]! * combination.weight) / (1 - dropped),
+      atoms: [self, ...others],
+      radius: isWhole ? Infinity : radius,
+      ...(combination.name ? { variant: combination.name } : {}),
+      periodic: images.isCrystal,
+      ...(density === undefined ? {} : { atomDensity: density }),
+      diagnostics: [...diagnostics, ...said],
+    };
+    return { ...site, diagnostics: [...site.diagnostics, ...checkSite(structure, site)] };
+  });
+}
+
+/** The atoms of one combination, by distance; what cannot be together is sorted out or refused. */
+function pickAtoms(
+  structure: Structure,
+  around: readonly Image[],
+  own: Image,
+  { labels }: Combination,
+  disorder: Disorder,
+  images: Images,
+  diagnostics: Diagnostic[],
+): SiteAtom[] {
+  const { atoms } = structure;
+  const isAbsorberPartial = images.occupancy[own.source]! < 1;
+  const chosen: SiteAtom[] = [];
+  for (const image of around) {
+    if (image === own) continue;
+    const group = disorder.groupOf[image.source]!;
+    if (group >= 0 && labels.get(group) !== disorder.labelOf(image.source)) continue;
+    // On the absorber's own spot sits whoever replaces it elsewhere.
+    if (isAbsorberPartial && image.distance < 0.8 && images.occupancy[image.source]! + images.occupancy[own.source]! <= 1.05) continue;
+    chosen.push(siteAtom(atoms[image.source]!, image, occupancyOf(image.source, disorder, images, group >= 0)));
+  }
+  const absorber = siteAtom(atoms[own.source]!, own, 1);
+  return resolveOverlaps(structure, absorber, sortAtoms(chosen), diagnostics);
+}
+
+/** A chosen alternate stands for its whole group: 0.6 of A and 0.4 of B are, in variant A, an atom fully there. */
+function occupancyOf(source: number, { groups, groupOf }: Disorder, images: Images, isChosen: boolean): number {
+  const group = groupOf[source]!;
+  if (!isChosen || group < 0) return images.occupancy[source]!;
+  return Math.min(1, groups[group]!.weights.reduce((sum, weight) => sum + weight, 0));
+}
+
+function siteAtom(atom: Atom, image: Image, occupancy: number): SiteAtom {
+  return {
+    element: atom.element,
+    name: atom.name,
+    position: image.position,
+    distance: image.distance,
+    occupancy,
+    source: image.source,
+    symmetry: image.symmetry,
+    ...(atom.uIso === undefined ? {} : { uIso: atom.uIso }),
+    ...(atom.residue ? { residue: atom.residue } : {}),
+  };
+}
+
+/** By distance, ties (to 1e-6 Å) by source and symmetry, so that the same site lists alike whatever the rounding. */
+function sortAtoms(atoms: SiteAtom[]): SiteAtom[] {
+  const rank = (atom: SiteAtom) => Math.round(atom.distance * 1e6);
+  return atoms.sort((a, b) => rank(a) - rank(b) || a.source - b.source || (a.symmetry < b.symmetry ? -1 : 1));
+}
+
+function resolveOverlaps(structure: Structure, absorber: SiteAtom, atoms: SiteAtom[], diagnostics: Diagnostic[]): SiteAtom[] {
+  const out = new Set<SiteAtom>();
+  const extra = new Map<SiteAtom, number>();
+  const byX = [absorber, ...atoms].sort((a, b) => a.position[0] - b.position[0]);
+  for (let i = 0; i < byX.length; i++) {
+    for (let j = i + 1; j < byX.length && byX[j]!.position[0] - byX[i]!.position[0] < TOO_CLOSE; j++) {
+      const pair = [byX[i]!, byX[j]!] as const;
+      const apart = distance(pair[0].position, pair[1].position);
+      if (apart >= TOO_CLOSE || out.has(pair[0]) || out.has(pair[1])) continue;
+      const [kept, lost] = pair[0].distance <= pair[1].distance ? pair : [pair[1], pair[0]];
+      const isSame = kept.element === lost.element && kept.name === lost.name && apart < 0.01;
+      if (isSame) {
+        diagnostics.push({ code: 'duplicate-atom', message: `${describe(structure, lost)} occurs twice at the same place; one is used` });
+      } else if (kept.occupancy + lost.occupancy <= 1.05) {
+        extra.set(kept, (extra.get(kept) ?? 0) + lost.occupancy);
+        diagnostics.push({
+          code: 'split-position',
+          message: `${describe(structure, kept)} and ${describe(structure, lost)} are ${apart.toFixed(2)} Å apart and partly occupied; the nearer stands for both`,
+        });
+      } else if (kept.element === 'H' || lost.element === 'H') {
+        diagnostics.push({ code: 'hydrogen-overlap', message: `${describe(structure, kept)} and ${describe(structure, lost)} are ${apart.toFixed(2)} Å apart` });
+        continue;
+      } else {
+        throw new InputError(
+          `${describe(structure, kept)} and ${describe(structure, lost)} are ${apart.toFixed(3)} Å apart, closer than atoms can be; ` +
+            'remove one, or mark them as alternates with occupancies that sum to 1',
+        );
+      }
+      out.add(lost);
+    }
+  }
+  if (out.size === 0) return atoms;
+  return atoms.filter((atom) => !out.has(atom)).map((atom) => (extra.has(atom) ? { ...atom, occupancy: Math.min(1, atom.occupancy + extra.get(atom)!) } : atom));
+}
+
+function describe({ atoms }: Structure, atom: SiteAtom): string {
+  const { line } = atoms[atom.source]!;
+  return `${atomLabel(atoms[atom.source]!)}${line === undefined ? '' : ` (line ${line})`}${atom.symmetry === 'x,y,z' ? '' : ` at ${atom.symmetry}`}`;
+}
+
+function normalised(sites: readonly Site[]): Site[] {
+  const total = sites.reduce((sum, site) => sum + site.weight, 0);
+  return sites.map((site) => ({ ...site, weight: site.weight / total }));
+}
+
+/** Å: distances of equivalent sites listed apart differ by the rounding of their coordinates only. */
+const SAME_DISTANCE = 5e-4;
+
+/** Sites of a crystal whose surroundings are the same, distance by distance and, around the nearest atoms, pair by pair, are one. */
+function mergeEquivalent(sites: readonly Site[]): Site[] {
+  const kept: { site: Site; weight: number; count: number; print: Float64Array; elements: string }[] = [];
+  for (const site of sites) {
+    const { print, elements } = fingerprint(site);
+    const twin = site.variant === undefined ? kept.find((other) => other.elements === elements && isNear(other.print, print)) : undefined;
+    if (twin) {
+      twin.weight += site.weight;
+      twin.count++;
+    } else kept.push({ site, weight: site.weight, count: 1, print, elements });
+  }
+  return kept.map(({ site, weight, count }) =>
+    count === 1
+      ? site
+      : {
+          ...site,
+          weight,
+          diagnostics: [...site.diagnostics, { code: 'equivalent-sites', message: `${site.label} stands for ${count} listed atoms with the same surroundings` }],
+        },
+  );
+}
+
+function fingerprint(site: Site): { print: Float64Array; elements: string } {
+  const near = site.atoms.slice(1, 25);
+  const pairs: number[] = [];
+  for (let i = 0; i < near.length; i++) for (let j = 0; j < i; j++) pairs.push(distance(near[i]!.position, near[j]!.position));
+  // Sorted within each element, so that ties between elements cannot change the order.
+  const byElement = [...site.atoms].sort((a, b) => (a.element < b.element ? -1 : a.element > b.element ? 1 : a.distance - b.distance));
+  return {
+    print: Float64Array.from([...byElement.map((atom) => atom.distance), ...byElement.map((atom) => atom.occupancy), ...pairs.sort((a, b) => a - b)]),
+    elements: byElement.map((atom) => atom.element).join(''),
+  };
+}
+
+const isNear = (a: Float64Array, b: Float64Array): boolean => a.length === b.length && a.every((value, i) => Math.abs(value - b[i]!) < SAME_DISTANCE);
