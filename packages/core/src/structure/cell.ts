@@ -54,7 +54,8 @@ export function cellGeometry(cell: Cell): CellGeometry {
   const det = dot(a, bc);
   const volume = Math.abs(det);
   // Below one thousandth of abc the three vectors lie in a plane for every purpose of chemistry.
-  if (!(volume > 1e-3 * cell.a * cell.b * cell.c)) throw new InputError('the unit cell has no volume: its angles put a, b, c into one plane');
+  if (!(volume > 1e-3 * cell.a * cell.b * cell.c))
+    throw new InputError('the unit cell has no volume: its angles put a, b, c into one plane');
   return {
     toCartesian: Float64Array.of(a[0], b[0], c[0], a[1], b[1], c[1], a[2], b[2], c[2]),
     toFractional: Float64Array.from([...bc, ...ca, ...ab], (v) => v / det),

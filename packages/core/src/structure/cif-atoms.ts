@@ -63,7 +63,8 @@ export class AtomRows {
     }
     this.columns = columns;
     for (const axis of ['x', 'y', 'z'] as const) {
-      if (this.slot[axis] === undefined) throw new ReadError(`line ${line}: the atom list has no column for ${axis}; coordinates need x, y and z`, { line });
+      if (this.slot[axis] === undefined)
+        throw new ReadError(`line ${line}: the atom list has no column for ${axis}; coordinates need x, y and z`, { line });
     }
   }
 
@@ -163,7 +164,10 @@ export class AtomRows {
 
   private fail(text: string, axis: string): never {
     const line = this.rowLine;
-    throw new ReadError(`line ${line}: ${axis} should be a number, found "${text.slice(0, 40)}"; write ? for an unknown one`, { line, text });
+    throw new ReadError(`line ${line}: ${axis} should be a number, found "${text.slice(0, 40)}"; write ? for an unknown one`, {
+      line,
+      text,
+    });
   }
 
   private typeOf(text: CifValue): ReturnType<typeof elementOfType> {
@@ -175,7 +179,8 @@ export class AtomRows {
   private chargeOf(text: CifValue, line: number): number | undefined {
     if (text === undefined) return undefined;
     const charge = /^[+-]?\d+$/.test(text) ? Number(text) : chargeOf(text);
-    if (charge === undefined) this.diagnostics.push({ code: 'bad-charge', message: `line ${line}: "${text}" is no charge and is not used`, line });
+    if (charge === undefined)
+      this.diagnostics.push({ code: 'bad-charge', message: `line ${line}: "${text}" is no charge and is not used`, line });
     return charge === 0 ? undefined : charge;
   }
 
@@ -183,14 +188,19 @@ export class AtomRows {
     if (text === undefined) return undefined;
     const [value] = numberWithSu(text);
     if (Number.isFinite(value)) return value;
-    this.diagnostics.push({ code: 'bad-displacement', message: `line ${line}: ${what} should be a number, found "${text.slice(0, 20)}"; it is not used`, line });
+    this.diagnostics.push({
+      code: 'bad-displacement',
+      message: `line ${line}: ${what} should be a number, found "${text.slice(0, 20)}"; it is not used`,
+      line,
+    });
     return undefined;
   }
 
   private occupancy(text: CifValue, label: string, line: number): number {
     if (text === undefined || text === '1.00') return 1;
     const [value] = numberWithSu(text);
-    if (!Number.isFinite(value)) throw new ReadError(`line ${line}: the occupancy of ${label} should be a number, found "${text.slice(0, 40)}"`, { line, text });
+    if (!Number.isFinite(value))
+      throw new ReadError(`line ${line}: the occupancy of ${label} should be a number, found "${text.slice(0, 40)}"`, { line, text });
     return clampOccupancy(value, label, line, this.diagnostics);
   }
 
@@ -202,7 +212,11 @@ export class AtomRows {
     const insertion = get('pdbx_pdb_ins_code') ?? '';
     const last = this.residue;
     const same =
-      last && last.name === name && last.chain === chain && last.insertion === insertion && (last.number === number || (Number.isNaN(number) && last.number === 0));
+      last &&
+      last.name === name &&
+      last.chain === chain &&
+      last.insertion === insertion &&
+      (last.number === number || (Number.isNaN(number) && last.number === 0));
     if (same) return last;
     this.residue = { name: this.intern(name), number: Number.isNaN(number) ? 0 : number, insertion, chain: this.intern(chain) };
     return this.residue;
@@ -225,6 +239,10 @@ export function clampOccupancy(value: number, label: string, line: number, diagn
     return 0;
   }
   const cut = value < 0 ? 0 : 1;
-  diagnostics.push({ code: 'occupancy-range', message: `line ${line}: ${label} has occupancy ${value}, outside 0 to 1; ${cut} is used`, line });
+  diagnostics.push({
+    code: 'occupancy-range',
+    message: `line ${line}: ${label} has occupancy ${value}, outside 0 to 1; ${cut} is used`,
+    line,
+  });
   return cut;
 }

@@ -11,7 +11,10 @@ export interface CifHandler {
   block(name: string, line: number): void;
   pair(tag: string, value: CifValue, line: number): void;
   /** Tags in lower case. Returns which columns to hand over and the taker of rows, or undefined to skip the loop. */
-  loop(tags: readonly string[], line: number): { columns: readonly number[]; row: (values: readonly CifValue[], line: number) => void } | undefined;
+  loop(
+    tags: readonly string[],
+    line: number,
+  ): { columns: readonly number[]; row: (values: readonly CifValue[], line: number) => void } | undefined;
 }
 
 const QUOTE = 39;
@@ -75,7 +78,10 @@ class Tokens {
 
   private textField(at: number): void {
     const close = this.text.indexOf('\n;', at);
-    if (close < 0) throw new ReadError(`line ${this.line}: a text field opened by ";" is never closed; end it with ";" at a line start`, { line: this.line });
+    if (close < 0)
+      throw new ReadError(`line ${this.line}: a text field opened by ";" is never closed; end it with ";" at a line start`, {
+        line: this.line,
+      });
     this.kind = 'value';
     this.quoted = true;
     this.start = at + 1;
@@ -93,7 +99,10 @@ class Tokens {
       i++;
     }
     if (text.charCodeAt(i) !== quote) {
-      throw new ReadError(`line ${this.line}: a quoted value is not closed on its line; add the closing quote`, { line: this.line, text: text.slice(at, i) });
+      throw new ReadError(`line ${this.line}: a quoted value is not closed on its line; add the closing quote`, {
+        line: this.line,
+        text: text.slice(at, i),
+      });
     }
     this.kind = 'value';
     this.quoted = true;
@@ -140,12 +149,16 @@ export function scanCif(text: string, handler: CifHandler): void {
     else if (kind === 'tag') {
       const tag = text.slice(tokens.start, tokens.end).toLowerCase();
       tokens.next();
-      if ((tokens.kind as Kind) !== 'value') throw new ReadError(`line ${line}: ${tag} has no value; write ? where it is unknown`, { line, text: tag });
+      if ((tokens.kind as Kind) !== 'value')
+        throw new ReadError(`line ${line}: ${tag} has no value; write ? where it is unknown`, { line, text: tag });
       handler.pair(tag, tokens.value, line);
       tokens.next();
     } else {
       const found = text.slice(tokens.start, Math.min(tokens.end, tokens.start + 40));
-      throw new ReadError(`line ${line}: a value stands where a tag should, "${found}"; quote values that hold blanks`, { line, text: found });
+      throw new ReadError(`line ${line}: a value stands where a tag should, "${found}"; quote values that hold blanks`, {
+        line,
+        text: found,
+      });
     }
   }
 }

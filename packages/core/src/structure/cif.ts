@@ -42,7 +42,10 @@ class Block {
       if (!pair) continue;
       const number = numberWithSu(pair.value);
       if (!Number.isFinite(number[0])) {
-        throw new ReadError(`line ${pair.line}: ${key} should be a number, found "${pair.value.slice(0, 40)}"`, { line: pair.line, text: pair.value });
+        throw new ReadError(`line ${pair.line}: ${key} should be a number, found "${pair.value.slice(0, 40)}"`, {
+          line: pair.line,
+          text: pair.value,
+        });
       }
       return number;
     }
@@ -68,7 +71,10 @@ function scan(text: string, diagnostics: Diagnostic[]): Block | undefined {
     if (!block.atoms && single.size > 0) {
       const rows = startAtoms([...single.keys()], [...single.values()][0]!.line);
       const values = [...single.values()];
-      rows.row(rows.columns.map((column) => values[column]!.value), values[0]!.line);
+      rows.row(
+        rows.columns.map((column) => values[column]!.value),
+        values[0]!.line,
+      );
     }
     single.clear();
     if (block.atoms && !found) found = block;
@@ -122,7 +128,8 @@ function scan(text: string, diagnostics: Diagnostic[]): Block | undefined {
     },
   });
   closeBlock();
-  if (more !== undefined) diagnostics.push({ code: 'more-blocks', message: `only the data block "${found!.name}" is read; "${more}" holds atoms too` });
+  if (more !== undefined)
+    diagnostics.push({ code: 'more-blocks', message: `only the data block "${found!.name}" is read; "${more}" holds atoms too` });
   return found;
 }
 
@@ -139,16 +146,20 @@ export function readCif(text: string): Structure {
   const cell = cellOf(block);
   const geometry = cell && geometryOf(cell, block);
   const isMacromolecule = rows.dialect === 'mmcif';
-  if (rows.isFractional && !geometry) throw new ReadError('the atoms have fractional coordinates but the file gives no unit cell; add _cell_length_a … _cell_angle_gamma');
+  if (rows.isFractional && !geometry)
+    throw new ReadError('the atoms have fractional coordinates but the file gives no unit cell; add _cell_length_a … _cell_angle_gamma');
   const models = rows.finish(new Set([...(formula ?? '').matchAll(/[A-Z][a-z]?/g)].map(([symbol]) => symbol)), block.anisotropic);
-  if (rows.isFractional) for (const [, atoms] of models) for (let i = 0; i < atoms.length; i++) atoms[i] = toCartesian(atoms[i]!, geometry!);
+  if (rows.isFractional)
+    for (const [, atoms] of models) for (let i = 0; i < atoms.length; i++) atoms[i] = toCartesian(atoms[i]!, geometry!);
   const [first, ...others] = [...models.values()];
   if (!first || first.length === 0) throw new ReadError('the CIF holds no atom with coordinates and a known element');
   const group = cell ? symmetryOf(block, cell, diagnostics, isMacromolecule) : { operators: [IDENTITY] };
   const statistics = statisticsOf(block);
   return {
     format: rows.dialect,
-    title: (block.text('_struct_title', '_chemical_name_common', '_chemical_name_systematic', '_chemical_formula_sum') ?? block.name).trim(),
+    title: (
+      block.text('_struct_title', '_chemical_name_common', '_chemical_name_systematic', '_chemical_formula_sum') ?? block.name
+    ).trim(),
     atoms: first,
     moreFrames: others,
     ...(cell ? { cell } : {}),
@@ -164,7 +175,8 @@ function cellOf(block: Block): Cell | undefined {
   const angles = ['alpha', 'beta', 'gamma'].map((axis) => block.number(`_cell_angle_${axis}`)?.[0]);
   if (lengths.every((length) => length === undefined)) return undefined;
   const [a, b, c] = lengths;
-  if (a === undefined || b === undefined || c === undefined) throw new ReadError('the unit cell is incomplete; give _cell_length_a, _b and _c');
+  if (a === undefined || b === undefined || c === undefined)
+    throw new ReadError('the unit cell is incomplete; give _cell_length_a, _b and _c');
   const [alpha = 90, beta = 90, gamma = 90] = angles;
   if (a === 1 && b === 1 && c === 1) return undefined; // the placeholder of models without a crystal
   return { a, b, c, alpha, beta, gamma };
@@ -188,21 +200,37 @@ function toCartesian(atom: Atom, { toCartesian: A }: CellGeometry): Atom {
   return { ...atom, position, positionSu: [spread(0), spread(1), spread(2)] satisfies Vec3 };
 }
 
-function symmetryOf(block: Block, cell: Cell, diagnostics: Diagnostic[], isMacromolecule: boolean): { operators: readonly SymmetryOperator[]; name?: string } {
-  const name = block.text('_space_group_name_h-m_alt', '_symmetry_space_group_name_h-m', '_space_group_name_h-m_full', '_space_group_name_h-m_ref');
+function symmetryOf(
+  block: Block,
+  cell: Cell,
+  diagnostics: Diagnostic[],
+  isMacromolecule: boolean,
+): { operators: readonly SymmetryOperator[]; name?: string } {
+  const name = block.text(
+    '_space_group_name_h-m_alt',
+    '_symmetry_space_group_name_h-m',
+    '_space_group_name_h-m_full',
+    '_space_group_name_h-m_ref',
+  );
   const hall = block.text('_space_group_name_hall', '_symmetry_space_group_name_hall');
   const number = block.number('_space_group_it_number', '_symmetry_int_tables_number')?.[0];
   if (block.operators.length > 0) {
     return { operators: tidyOperators(block.operators), ...(name ? { name } : {}) };
   }
   const choice: SpaceGroupChoice | undefined =
-    (hall && spaceGroupByHall(hall)) || (name && spaceGroupByName(name, cell)) || (!name && number && spaceGroupByNumber(number, cell)) || undefined;
+    (hall && spaceGroupByHall(hall)) ||
+    (name && spaceGroupByName(name, cell)) ||
+    (!name && number && spaceGroupByNumber(number, cell)) ||
+    undefined;
   if (choice) {
-    if (choice.assumed) diagnostics.push({ code: 'setting-assumed', message: `the file lists no symmetry operators; ${choice.assumed} is assumed` });
+    if (choice.assumed)
+      diagnostics.push({ code: 'setting-assumed', message: `the file lists no symmetry operators; ${choice.assumed} is assumed` });
     return { operators: choice.operators, name: name ?? choice.name };
   }
   if (name || hall) {
-    throw new ReadError(`the space group "${name ?? hall}" is not known and the file lists no symmetry operators; add them (_space_group_symop_operation_xyz)`);
+    throw new ReadError(
+      `the space group "${name ?? hall}" is not known and the file lists no symmetry operators; add them (_space_group_symop_operation_xyz)`,
+    );
   }
   diagnostics.push({
     code: 'no-symmetry',

@@ -62,7 +62,8 @@ export function findDisorder(structure: Structure, images: Images): Disorder {
   return { groups, groupOf, labelOf };
 }
 
-const labelIn = (atom: Atom, source: number): string => `${atom.name}${atom.residue ? ` ${atom.residue.chain}${atom.residue.number}` : ''}#${source}`;
+const labelIn = (atom: Atom, source: number): string =>
+  `${atom.name}${atom.residue ? ` ${atom.residue.chain}${atom.residue.number}` : ''}#${source}`;
 
 /** Sets of atoms without alternate labels, of different sources, that sit on one spot with occupancies summing to at most 1. */
 function sharedPlaces(atoms: readonly Atom[], images: Images): number[][] {
@@ -132,7 +133,9 @@ export function combinations(
       unit.groups.some((other) => {
         if (groups[other]!.labels.join() !== groups[group]!.labels.join()) return false;
         const theirs = members.get(other)!;
-        return own.some((a) => theirs.some((b) => labelOf(a.source) === labelOf(b.source) && distance(a.position, b.position) < IN_CONTACT));
+        return own.some((a) =>
+          theirs.some((b) => labelOf(a.source) === labelOf(b.source) && distance(a.position, b.position) < IN_CONTACT),
+        );
       }),
     );
     const unit = { groups: [group, ...joined.flatMap((other) => other.groups)], near: isNear || joined.some((other) => other.near) };
@@ -147,7 +150,8 @@ export function combinations(
     const total = weights.reduce((sum, weight) => sum + weight, 0);
     let options = labels.map((label, i) => ({ label, weight: weights[i]! / total })).filter(({ weight }) => weight > 0);
     if (fixed && unit.groups.includes(fixed.group)) options = [{ label: fixed.label, weight: 1 }];
-    else if (!unit.near) options = [{ label: options.reduce((best, option) => (option.weight > best.weight ? option : best)).label, weight: 1 }];
+    else if (!unit.near)
+      options = [{ label: options.reduce((best, option) => (option.weight > best.weight ? option : best)).label, weight: 1 }];
     const isChoice = options.length > 1;
     list = list.flatMap((one) =>
       options.map(({ label, weight }) => ({

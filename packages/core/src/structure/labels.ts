@@ -37,10 +37,9 @@ export function elementOfLabel(label: string, among?: ReadonlySet<string>): stri
 }
 
 const STANDARD_RESIDUES = new Set(
-  (
-    'ALA ARG ASN ASP CYS GLN GLU GLY HIS ILE LEU LYS MET PHE PRO SER THR TRP TYR VAL MSE ' +
-    'A C G U T DA DC DG DT DU HOH WAT DOD'
-  ).split(' '),
+  ('ALA ARG ASN ASP CYS GLN GLU GLY HIS ILE LEU LYS MET PHE PRO SER THR TRP TYR VAL MSE ' + 'A C G U T DA DC DG DT DU HOH WAT DOD').split(
+    ' ',
+  ),
 );
 
 /**

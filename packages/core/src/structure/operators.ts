@@ -17,7 +17,10 @@ export function parseOperator(text: string, line?: number): SymmetryOperator {
       ...(line ? { line } : {}),
       text,
     });
-  const rows = text.toLowerCase().replace(/["'\s]/g, '').split(',');
+  const rows = text
+    .toLowerCase()
+    .replace(/["'\s]/g, '')
+    .split(',');
   if (rows.length !== 3) throw fail('it needs three parts separated by commas');
   const rotation: number[] = [];
   const translation: number[] = [];

@@ -112,10 +112,20 @@ function readCryst1(text: string, start: number, end: number, line: number): Cry
   }
   const name = text.slice(start + 55, Math.min(end, start + 66)).trim();
   if (name === '') {
-    return { cell, name: 'P 1', operators: [IDENTITY], diagnostics: [{ code: 'no-symmetry', message: `line ${line}: CRYST1 names no space group; P 1 is assumed`, line }] };
+    return {
+      cell,
+      name: 'P 1',
+      operators: [IDENTITY],
+      diagnostics: [{ code: 'no-symmetry', message: `line ${line}: CRYST1 names no space group; P 1 is assumed`, line }],
+    };
   }
   const choice = spaceGroupByName(name, cell);
-  if (!choice) throw new ReadError(`line ${line}, columns 56–66: the space group "${name}" is not known; write its full symbol, like P 1 21 1`, { line, columns: [56, 66], text: name });
+  if (!choice)
+    throw new ReadError(`line ${line}, columns 56–66: the space group "${name}" is not known; write its full symbol, like P 1 21 1`, {
+      line,
+      columns: [56, 66],
+      text: name,
+    });
   const diagnostics = choice.assumed ? [{ code: 'setting-assumed', message: `line ${line}: ${choice.assumed} is assumed`, line }] : [];
   return { cell, name, operators: choice.operators, diagnostics };
 }
@@ -144,7 +154,11 @@ class AtomReader {
     if (shift > 0) this.shifted++;
     const o = start + shift; // columns count from here, column n at o + n − 1
     const field = (first: number, last: number): string => text.slice(Math.min(o + first - 1, end), Math.min(o + last, end));
-    const position: Vec3 = [this.coordinate(o, end, 31, 'x', line), this.coordinate(o, end, 39, 'y', line), this.coordinate(o, end, 47, 'z', line)];
+    const position: Vec3 = [
+      this.coordinate(o, end, 31, 'x', line),
+      this.coordinate(o, end, 39, 'y', line),
+      this.coordinate(o, end, 47, 'z', line),
+    ];
     const name4 = field(13, 16).padEnd(4);
     const name = this.intern(name4.trim());
     const residueName = field(18, 20).trim();
@@ -168,8 +182,16 @@ class AtomReader {
   }
 
   summarise(): void {
-    if (this.guessed > 0) this.diagnostics.push({ code: 'element-from-name', message: `${this.guessed} atoms have no element column; their elements are taken from the atom names` });
-    if (this.shifted > 0) this.diagnostics.push({ code: 'shifted-columns', message: `${this.shifted} lines are pushed to the right by serial numbers above 99999 and are read accordingly` });
+    if (this.guessed > 0)
+      this.diagnostics.push({
+        code: 'element-from-name',
+        message: `${this.guessed} atoms have no element column; their elements are taken from the atom names`,
+      });
+    if (this.shifted > 0)
+      this.diagnostics.push({
+        code: 'shifted-columns',
+        message: `${this.shifted} lines are pushed to the right by serial numbers above 99999 and are read accordingly`,
+      });
   }
 
   private coordinate(o: number, end: number, first: number, axis: string, line: number): number {
@@ -191,7 +213,10 @@ class AtomReader {
 
   /** Hand-written lines, left-justified: believed if the blank-separated numbers say the same as the columns. */
   private isFree(o: number, end: number, first: number, value: number): boolean {
-    const tokens = this.text.slice(o + 30, Math.min(o + 66, end)).trim().split(/\s+/);
+    const tokens = this.text
+      .slice(o + 30, Math.min(o + 66, end))
+      .trim()
+      .split(/\s+/);
     return Number(tokens[(first - 31) / 8]) === value;
   }
 
@@ -208,7 +233,11 @@ class AtomReader {
     const value = decimalAt(this.text, from, to);
     if (Number.isFinite(value)) return clampOccupancy(value, name, line, this.diagnostics);
     const found = this.text.slice(from, to);
-    throw new ReadError(`line ${line}, columns 55–60: the occupancy should be a number like "  1.00", found "${found}"`, { line, columns: [55, 60], text: found });
+    throw new ReadError(`line ${line}, columns 55–60: the occupancy should be a number like "  1.00", found "${found}"`, {
+      line,
+      columns: [55, 60],
+      text: found,
+    });
   }
 
   private elementOf(column: string, name4: string, residue: string, line: number): string | undefined {
@@ -229,7 +258,11 @@ class AtomReader {
   }
 
   private unknown(name: string, why: string, line: number): void {
-    this.diagnostics.push({ code: 'unknown-element', message: `line ${line}: atom ${name.trim()} is left out: ${why}; write the element into columns 77–78`, line });
+    this.diagnostics.push({
+      code: 'unknown-element',
+      message: `line ${line}: atom ${name.trim()} is left out: ${why}; write the element into columns 77–78`,
+      line,
+    });
   }
 
   /** @param key  columns 18–27: residue name, chain, number, insertion code */
@@ -239,7 +272,11 @@ class AtomReader {
     const digits = key.slice(5, 9);
     const number = hybrid36(digits);
     if (Number.isNaN(number)) {
-      this.diagnostics.push({ code: 'bad-residue-number', message: `line ${line}: "${digits}" is no residue number; 0 is shown in its place`, line });
+      this.diagnostics.push({
+        code: 'bad-residue-number',
+        message: `line ${line}: "${digits}" is no residue number; 0 is shown in its place`,
+        line,
+      });
     }
     this.residue = {
       name: this.intern(name),
@@ -307,7 +344,11 @@ function checkDuplicates(atoms: readonly Atom[], diagnostics: Diagnostic[]): voi
       seen.set(atom.residue!, names);
     }
     if (names.has(key)) {
-      diagnostics.push({ code: 'duplicate-atom', message: `line ${atom.line}: ${atom.name} occurs twice at the same place; one is used`, line: atom.line! });
+      diagnostics.push({
+        code: 'duplicate-atom',
+        message: `line ${atom.line}: ${atom.name} occurs twice at the same place; one is used`,
+        line: atom.line!,
+      });
     }
     names.add(key);
     previous = atom;

@@ -69,23 +69,38 @@ function chooseAbsorbers({ atoms }: Structure, absorber: string | undefined): nu
   });
   if (absorber === undefined) {
     const elements = [...byElement.keys()].filter((element) => hasEdge(elementBySymbol(element).Z));
-    if (elements.length === 0) throw new InputError(`no element here has an edge for EXAFS (Na or heavier); there are ${[...byElement.keys()].join(', ')}`);
+    if (elements.length === 0)
+      throw new InputError(`no element here has an edge for EXAFS (Na or heavier); there are ${[...byElement.keys()].join(', ')}`);
     const rank = (element: string) => (isMetal(element) ? 1000 : 0) + elementBySymbol(element).Z;
     return elements.sort((a, b) => rank(b) - rank(a)).map((element) => byElement.get(element)!);
   }
   const wanted = absorber.trim();
   const exact = byElement.get(wanted);
   if (exact) return [exact];
-  const labelled = atoms.flatMap((atom, source) => (atom.occupancy > 0 && (atomLabel(atom) === wanted || atom.name === wanted) ? [source] : []));
+  const labelled = atoms.flatMap((atom, source) =>
+    atom.occupancy > 0 && (atomLabel(atom) === wanted || atom.name === wanted) ? [source] : [],
+  );
   const labelledElements = new Set(labelled.map((source) => atoms[source]!.element));
   if (labelled.length > 0 && labelledElements.size === 1) return [labelled];
   const element = byElement.get(elementSymbol(wanted) ?? '');
   if (element) return [element];
-  if (labelled.length > 0) throw new InputError(`"${wanted}" names atoms of several elements (${[...labelledElements].join(', ')}); give the full label, like "${atomLabel(atoms[labelled[0]!]!)}"`);
-  throw new InputError(`there is no ${wanted} in the structure: neither an element nor an atom label; it holds ${[...byElement.keys()].join(', ')}`);
+  if (labelled.length > 0)
+    throw new InputError(
+      `"${wanted}" names atoms of several elements (${[...labelledElements].join(', ')}); give the full label, like "${atomLabel(atoms[labelled[0]!]!)}"`,
+    );
+  throw new InputError(
+    `there is no ${wanted} in the structure: neither an element nor an atom label; it holds ${[...byElement.keys()].join(', ')}`,
+  );
 }
 
-function sitesOf(structure: Structure, source: number, images: Images, disorder: Disorder, options: SiteOptions, shared: readonly Diagnostic[]): Site[] {
+function sitesOf(
+  structure: Structure,
+  source: number,
+  images: Images,
+  disorder: Disorder,
+  options: SiteOptions,
+  shared: readonly Diagnostic[],
+): Site[] {
   const { radius, variantRadius = Math.min(radius, 6), maxVariants = 32 } = options;
   const { atoms } = structure;
   const absorber = atoms[source]!;
@@ -108,7 +123,11 @@ function sitesOf(structure: Structure, source: number, images: Images, disorder:
   return list.map((combination) => {
     const said: Diagnostic[] = [];
     const others = pickAtoms(structure, around, own, combination, disorder, images, said);
-    const self: SiteAtom = { ...siteAtom(absorber, own, occupancyOf(source, disorder, images, fixed !== undefined)), symmetry: 'x,y,z', distance: 0 };
+    const self: SiteAtom = {
+      ...siteAtom(absorber, own, occupancyOf(source, disorder, images, fixed !== undefined)),
+      symmetry: 'x,y,z',
+      distance: 0,
+    };
     const site: Site = {
       label: atomLabel(absorber) + (absorber.alternate === undefined ? '' : ` (${absorber.alternate})`),
       element: absorber.element,
@@ -153,7 +172,10 @@ function pickAtoms(
 function occupancyOf(source: number, { groups, groupOf }: Disorder, images: Images, isChosen: boolean): number {
   const group = groupOf[source]!;
   if (!isChosen || group < 0) return images.occupancy[source]!;
-  return Math.min(1, groups[group]!.weights.reduce((sum, weight) => sum + weight, 0));
+  return Math.min(
+    1,
+    groups[group]!.weights.reduce((sum, weight) => sum + weight, 0),
+  );
 }
 
 function siteAtom(atom: Atom, image: Image, occupancy: number): SiteAtom {
@@ -196,7 +218,10 @@ function resolveOverlaps(structure: Structure, absorber: SiteAtom, atoms: SiteAt
           message: `${describe(structure, kept)} and ${describe(structure, lost)} are ${apart.toFixed(2)} Å apart and partly occupied; the nearer stands for both`,
         });
       } else if (kept.element === 'H' || lost.element === 'H') {
-        diagnostics.push({ code: 'hydrogen-overlap', message: `${describe(structure, kept)} and ${describe(structure, lost)} are ${apart.toFixed(2)} Å apart` });
+        diagnostics.push({
+          code: 'hydrogen-overlap',
+          message: `${describe(structure, kept)} and ${describe(structure, lost)} are ${apart.toFixed(2)} Å apart`,
+        });
         continue;
       } else {
         throw new InputError(
@@ -208,7 +233,9 @@ function resolveOverlaps(structure: Structure, absorber: SiteAtom, atoms: SiteAt
     }
   }
   if (out.size === 0) return atoms;
-  return atoms.filter((atom) => !out.has(atom)).map((atom) => (extra.has(atom) ? { ...atom, occupancy: Math.min(1, atom.occupancy + extra.get(atom)!) } : atom));
+  return atoms
+    .filter((atom) => !out.has(atom))
+    .map((atom) => (extra.has(atom) ? { ...atom, occupancy: Math.min(1, atom.occupancy + extra.get(atom)!) } : atom));
 }
 
 function describe({ atoms }: Structure, atom: SiteAtom): string {
@@ -241,7 +268,10 @@ function mergeEquivalent(sites: readonly Site[]): Site[] {
       : {
           ...site,
           weight,
-          diagnostics: [...site.diagnostics, { code: 'equivalent-sites', message: `${site.label} stands for ${count} listed atoms with the same surroundings` }],
+          diagnostics: [
+            ...site.diagnostics,
+            { code: 'equivalent-sites', message: `${site.label} stands for ${count} listed atoms with the same surroundings` },
+          ],
         },
   );
 }
@@ -253,9 +283,14 @@ function fingerprint(site: Site): { print: Float64Array; elements: string } {
   // Sorted within each element, so that ties between elements cannot change the order.
   const byElement = [...site.atoms].sort((a, b) => (a.element < b.element ? -1 : a.element > b.element ? 1 : a.distance - b.distance));
   return {
-    print: Float64Array.from([...byElement.map((atom) => atom.distance), ...byElement.map((atom) => atom.occupancy), ...pairs.sort((a, b) => a - b)]),
+    print: Float64Array.from([
+      ...byElement.map((atom) => atom.distance),
+      ...byElement.map((atom) => atom.occupancy),
+      ...pairs.sort((a, b) => a - b),
+    ]),
     elements: byElement.map((atom) => atom.element).join(''),
   };
 }
 
-const isNear = (a: Float64Array, b: Float64Array): boolean => a.length === b.length && a.every((value, i) => Math.abs(value - b[i]!) < SAME_DISTANCE);
+const isNear = (a: Float64Array, b: Float64Array): boolean =>
+  a.length === b.length && a.every((value, i) => Math.abs(value - b[i]!) < SAME_DISTANCE);

@@ -58,7 +58,9 @@ export function spaceGroupByName(written: string, cell: Cell): SpaceGroupChoice 
 /** Operators by Hall symbol. */
 export function spaceGroupByHall(hall: string): SpaceGroupChoice | undefined {
   const wanted = squeeze(hall);
-  const setting = (SpaceGroupsData as readonly Setting[]).find(({ hs }) => squeeze(hs.replace(/"/g, '=')) === squeeze(hall.replace(/"/g, '=')) || squeeze(hs) === wanted);
+  const setting = (SpaceGroupsData as readonly Setting[]).find(
+    ({ hs }) => squeeze(hs.replace(/"/g, '=')) === squeeze(hall.replace(/"/g, '=')) || squeeze(hs) === wanted,
+  );
   return setting && { name: setting.hm, operators: operatorsOf(setting) };
 }
 

@@ -102,10 +102,13 @@ export class XyzFrames {
     const trimmed = line.trim();
     if (trimmed === '') return;
     if (!/^\d+$/.test(trimmed)) {
-      throw new ReadError(`line ${this.line}: the number of atoms of a frame should stand here, found "${shorten(trimmed)}"; correct the count of the frame before`, {
-        line: this.line,
-        text: line,
-      });
+      throw new ReadError(
+        `line ${this.line}: the number of atoms of a frame should stand here, found "${shorten(trimmed)}"; correct the count of the frame before`,
+        {
+          line: this.line,
+          text: line,
+        },
+      );
     }
     this.count = Number(trimmed);
     this.countLine = this.line;
@@ -165,11 +168,15 @@ export class XyzFrames {
     if (element === undefined) {
       element = elementOfLabel(label) ?? '';
       if (element === '' && !/^(X|Xx|XX|Du|DU|Q|Bq|BQ|0)\d*$/.test(label)) {
-        throw new ReadError(`line ${this.line}: "${shorten(label)}" is no element; write a symbol like Fe or an atomic number`, { line: this.line, text: label });
+        throw new ReadError(`line ${this.line}: "${shorten(label)}" is no element; write a symbol like Fe or an atomic number`, {
+          line: this.line,
+          text: label,
+        });
       }
       this.species.set(label, element);
       const letters = /^[A-Za-z]+/.exec(label)?.[0] ?? '';
-      if (element === '') this.say('dummy-atom', `"${label}" atoms (first in line ${this.line}) are dummies without an element and are left out`);
+      if (element === '')
+        this.say('dummy-atom', `"${label}" atoms (first in line ${this.line}) are dummies without an element and are left out`);
       else if (letters.length > element.length && letters.toUpperCase() !== 'D')
         this.say('element-guessed', `"${label}" (first in line ${this.line}) is read as ${element}`);
     }
@@ -210,7 +217,10 @@ export class XyzFrames {
 
   private latticeOf(text: string | undefined, scale: number): Cell | undefined {
     if (text === undefined) return undefined;
-    const v = text.trim().split(/[\s,]+/).map((part) => decimalAt(part, 0, part.length) * scale);
+    const v = text
+      .trim()
+      .split(/[\s,]+/)
+      .map((part) => decimalAt(part, 0, part.length) * scale);
     if (v.length !== 9 || !v.every(Number.isFinite)) {
       throw new ReadError(`line ${this.line}: Lattice should hold nine numbers, found "${shorten(text)}"`, { line: this.line, text });
     }
@@ -225,8 +235,12 @@ export class XyzFrames {
 
   private repeatsOf(text: string | undefined): readonly [boolean, boolean, boolean] {
     if (text === undefined) return [true, true, true];
-    const flags = text.trim().split(/[\s,]+/).map((part) => /^(t|true|1|\.true\.)$/i.test(part));
-    if (flags.length !== 3) throw new ReadError(`line ${this.line}: pbc should hold three of T and F, found "${shorten(text)}"`, { line: this.line, text });
+    const flags = text
+      .trim()
+      .split(/[\s,]+/)
+      .map((part) => /^(t|true|1|\.true\.)$/i.test(part));
+    if (flags.length !== 3)
+      throw new ReadError(`line ${this.line}: pbc should hold three of T and F, found "${shorten(text)}"`, { line: this.line, text });
     return [flags[0]!, flags[1]!, flags[2]!];
   }
 
@@ -245,7 +259,10 @@ export class XyzFrames {
       column += width;
     }
     if (speciesColumn < 0 || positionColumn < 0 || column > 64) {
-      throw new ReadError(`line ${this.line}: Properties should name species:S:1 and pos:R:3, found "${shorten(properties)}"`, { line: this.line, text: properties });
+      throw new ReadError(`line ${this.line}: Properties should name species:S:1 and pos:R:3, found "${shorten(properties)}"`, {
+        line: this.line,
+        text: properties,
+      });
     }
     return { speciesColumn, positionColumn };
   }
