@@ -1,1 +1,1 @@
-export {};
+import './app.js';

@@ -1,1 +1,23 @@
-export {};
+#!/usr/bin/env node
+/** The `ringtrue` command. */
+import { Command, CommanderError } from 'commander';
+import { addPredict } from './predict.js';
+import { addServe } from './serve.js';
+import { VERSION } from './version.js';
+
+const program = new Command('ringtrue')
+  .description('Is a structure consistent with a measured EXAFS spectrum? Predicted from first principles, not fitted shell by shell.')
+  .version(VERSION)
+  .showHelpAfterError('(--help shows the options, with examples)')
+  .exitOverride();
+
+addPredict(program);
+addServe(program);
+
+try {
+  await program.parseAsync();
+} catch (error) {
+  // commander has printed its one line; help and version are no errors.
+  if (!(error instanceof CommanderError)) throw error;
+  process.exitCode = error.exitCode === 0 ? 0 : 2;
+}

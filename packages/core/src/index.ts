@@ -1,5 +1,10 @@
-/** @ringtrue/core: from coordinates to a predicted chi(k). Å, Å⁻¹, eV, K at this door. */
+/** @ringtrue/core: from coordinates to a predicted χ(k). Å, Å⁻¹, Å², eV, K at this door. */
+export type { Edge } from './atom/types.js';
 export * as constants from './constants.js';
+export { CancelledError, ConvergenceError, type Diagnostic, InputError, ReadError, type Running } from './errors.js';
+export { type PredictContext, predict } from './predict/predict.js';
+export type { PredictedNeighbour, PredictedPath, PredictedShell, Prediction, PredictOptions } from './predict/types.js';
+export type { SelfEnergyName } from './scattering/types.js';
 export {
   type Atom,
   type Cell,

@@ -3,9 +3,9 @@
  * Units at this door: Å, Å⁻¹, Å², eV, K, s.
  */
 
-import type { Edge } from './atom/types.js';
-import type { Diagnostic } from './errors.js';
-import type { SelfEnergyName } from './scattering/types.js';
+import type { Edge } from '../atom/types.js';
+import type { Diagnostic } from '../errors.js';
+import type { SelfEnergyName } from '../scattering/types.js';
 
 export interface PredictOptions {
   /** Element symbol, or one atom by its label. */

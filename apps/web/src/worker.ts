@@ -1,0 +1,21 @@
+/** All computing happens here, off the page's thread. Faults travel as their message: an Error loses its class on the way. */
+import { predict, type Prediction, type PredictOptions, ReadError, readStructure } from '@ringtrue/core';
+import { expose } from 'comlink';
+
+export type Outcome = { readonly prediction: Prediction } | { readonly fault: string };
+
+const api = {
+  predict(file: string, text: string, options: Partial<PredictOptions> & { readonly absorber: string }): Outcome {
+    try {
+      const structure = readStructure(text, { fileName: file });
+      return { prediction: predict(structure, options, { file, version: '0.1.0', now: () => performance.now() / 1000 }) };
+    } catch (error) {
+      const line = error instanceof ReadError && error.place.line !== undefined ? `line ${error.place.line}: ` : '';
+      return { fault: `${file}: ${line}${error instanceof Error ? error.message : String(error)}` };
+    }
+  },
+};
+
+export type WorkerApi = typeof api;
+
+expose(api);

@@ -1,0 +1,54 @@
+/** Reading what the user names and writing results whole or not at all. */
+import { mkdirSync, readFileSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
+import { dirname, join } from 'node:path';
+import { UsageError } from './command.js';
+
+/** Larger files are refused before they are read, bytes: the limit of one string in Node is 512 MB. */
+const LARGEST_FILE = 300e6;
+
+/** @throws {UsageError} absent, unreadable, a folder, or too large */
+export function readText(path: string): string {
+  try {
+    const { size } = statSync(path);
+    if (size > LARGEST_FILE) throw new UsageError(`${path}: ${Math.round(size / 1e6)} MB is more than the ${LARGEST_FILE / 1e6} MB that are read; cut out the part around the absorber`);
+    return readFileSync(path, 'utf8');
+  } catch (error) {
+    if (error instanceof UsageError) throw error;
+    throw new UsageError(`${path}: ${reasonOf(error)}`);
+  }
+}
+
+/** Write the files of a result into a folder, each under a temporary name first, so that none is ever found half-written. */
+export function writeFolder(folder: string, files: ReadonlyMap<string, string>): void {
+  try {
+    for (const [name, content] of files) {
+      const path = join(folder, name);
+      mkdirSync(dirname(path), { recursive: true });
+      const temporary = `${path}.part-${process.pid}`;
+      try {
+        writeFileSync(temporary, content);
+        renameSync(temporary, path);
+      } catch (error) {
+        rmSync(temporary, { force: true });
+        throw error;
+      }
+    }
+  } catch (error) {
+    throw new UsageError(`cannot write to ${folder}: ${reasonOf(error)}`);
+  }
+}
+
+const REASONS: Readonly<Record<string, string>> = {
+  ENOENT: 'no such file',
+  EISDIR: 'is a folder, a file is wanted',
+  EACCES: 'no permission',
+  EEXIST: 'a file stands where a folder is wanted',
+  ENOTDIR: 'a part of the path is no folder',
+  ENOSPC: 'the disk is full',
+  EROFS: 'the disk is read-only',
+};
+
+function reasonOf(error: unknown): string {
+  const code = (error as { code?: string }).code ?? '';
+  return REASONS[code] ?? (error instanceof Error ? error.message : String(error));
+}

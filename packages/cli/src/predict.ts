@@ -1,0 +1,124 @@
+/** `ringtrue predict`: a structure file to a predicted χ(k). */
+import { basename } from 'node:path';
+import { InputError, predict, type Prediction, type PredictOptions, ReadError, readStructure } from '@ringtrue/core';
+import { chiInK, chiInR } from '@ringtrue/figures';
+import { csvTable, predictionHtml, tablesOf } from '@ringtrue/report';
+import { type Command, InvalidArgumentError, Option } from 'commander';
+import { runCommand, UsageError } from './command.js';
+import { readText, writeFolder } from './files.js';
+import { toJson } from './json.js';
+import { plain, smallPlot, textTable } from './terminal.js';
+import { VERSION } from './version.js';
+
+interface Flags extends Partial<PredictOptions> {
+  readonly absorber: string;
+  readonly json?: boolean;
+  readonly out?: string;
+}
+
+export function addPredict(program: Command): void {
+  program
+    .command('predict')
+    .summary('compute chi(k) of a structure, nothing fitted')
+    .description('Compute chi(k) of a structure file (XYZ, PDB, mmCIF, CIF) from first principles; nothing is fitted.')
+    .argument('<structure>', 'coordinate file')
+    .requiredOption('--absorber <element>', 'absorbing element, or the label of one atom')
+    .addOption(new Option('--edge <edge>', 'absorption edge').choices(['K', 'L3', 'L2', 'L1']).default('K'))
+    .option('--temperature <K>', 'temperature of the sample, K (default 300)', number)
+    .option('--debye-temperature <K>', 'Debye temperature, K (default: one is assumed, with a warning)', number)
+    .addOption(new Option('--thermal <model>', 'thermal disorder').choices(['debye', 'none']).default('debye'))
+    .addOption(new Option('--self-energy <kind>', 'self-energy of the photoelectron').choices(['mean', 'hedin-lundqvist', 'dirac-hara']).default('mean'))
+    .option('--radius <angstrom>', 'longest half path length, Å (default 5)', number)
+    .option('--max-legs <n>', 'most legs of a path (default 2)', number)
+    .option('--k-max <k>', 'largest wave number, Å⁻¹ (default 15)', number)
+    .option('--s02 <value>', 'passive-electron factor S0² (default 0.82)', number)
+    .option('--e0 <eV>', "shift of the energy origin, eV, positive when the theory's zero lies above the data's (default 0)", number)
+    .option('--path-signals', 'amplitude and phase of every path in the JSON')
+    .option('--json', 'print one JSON document and nothing else on standard output')
+    .option('--out <folder>', 'write result.json, report.html, figures and tables into a folder')
+    .addHelpText('after', EXAMPLES)
+    .action((file: string, flags: Flags) => runCommand(() => run(file, flags)));
+}
+
+const EXAMPLES = `
+Examples:
+  ringtrue predict demo-structures/tideglass.cif --absorber Mn --temperature 15 --debye-temperature 500
+  ringtrue predict demo-structures/redoxin-site.xyz --absorber Fe --json > redoxin.json
+  ringtrue predict demo-structures/tideglass.cif --absorber Mn --radius 6 --out tideglass-prediction
+
+A prediction that agrees with a measurement shows consistency; it is no proof of a structure.`;
+
+function number(text: string): number {
+  const value = Number(text);
+  if (text.trim() === '' || !Number.isFinite(value)) throw new InvalidArgumentError(`a number is wanted, got "${plain(text)}".`);
+  return value;
+}
+
+function run(file: string, { json, out, ...options }: Flags): void {
+  const prediction = compute(file, options);
+  if (out !== undefined) writeFolder(out, filesOf(prediction));
+  if (json) {
+    process.stdout.write(`${toJson(prediction)}\n`);
+    for (const { message } of prediction.warnings) process.stderr.write(`${plain(message)}\n`);
+  } else {
+    process.stdout.write(summary(prediction, out));
+  }
+}
+
+/** Errors of the core know the line but not the file; here it is named. */
+function compute(file: string, options: Omit<Flags, 'json' | 'out'>): Prediction {
+  const text = readText(file);
+  try {
+    const structure = readStructure(text, { fileName: file });
+    return predict(structure, options, { file: basename(file), version: VERSION, now: () => performance.now() / 1000 });
+  } catch (error) {
+    if (error instanceof ReadError) {
+      const { line } = error.place;
+      throw new UsageError(`${file}${line === undefined ? '' : `, line ${line}`}: ${error.message}`);
+    }
+    if (error instanceof InputError) throw new UsageError(`${file}: ${error.message}`);
+    throw error;
+  }
+}
+
+function filesOf(prediction: Prediction): Map<string, string> {
+  const files = new Map<string, string>();
+  files.set('figures/chi-k.svg', chiInK(prediction));
+  files.set('figures/chi-R.svg', chiInR(prediction));
+  for (const table of Object.values(tablesOf(prediction))) files.set(`tables/${table.name}.csv`, csvTable(table));
+  files.set('report.html', predictionHtml(prediction));
+  files.set('result.json', `${toJson(prediction)}\n`);
+  return files;
+}
+
+/** What a reader wants first, in words and three tables. */
+function summary({ structure, options, absorbers, scattering, shells, paths, warnings, k, chi, timing }: Prediction, out: string | undefined): string {
+  const share = (value: number): string => `${(100 * value).toFixed(1)} %`;
+  const squared = (value: number): string => value.toFixed(5);
+  const weighted = k.map((value, i) => value * value * chi[i]!).filter((_, i) => k[i]! >= 2);
+  const shown = paths.slice(0, 12);
+  return [
+    `${plain(structure.file)}: ${structure.atoms} atoms, ${structure.format}${structure.title ? `, "${plain(structure.title)}"` : ''}`,
+    `${absorbers.length} absorbing ${absorbers.length === 1 ? 'site' : 'sites'}: ${absorbers.map(({ label, weight }) => `${plain(label)} (${share(weight)})`).join(', ')}; ${options.edge} edge, ${options.temperature} K, S0² ${options.s02}`,
+    `Fermi level ${scattering.fermiLevelEv.toFixed(2)} eV, interstitial ${scattering.interstitialPotentialEv.toFixed(2)} eV; spheres (bohr): ${scattering.atoms.map(({ element, role, muffinTinRadius }) => `${element}${role === 'absorber' ? '*' : ''} ${muffinTinRadius.toFixed(3)}`).join(', ')}`,
+    '',
+    textTable(
+      ['shell', 'N', 'mean R (Å)', 'thermal σ² (Å²)', 'static σ² (Å²)', 'share'],
+      shells.map((s) => [s.label, s.count.toFixed(1), s.meanDistance.toFixed(4), squared(s.sigma2.thermal), squared(s.sigma2.static), share(s.share)]),
+    ),
+    '',
+    textTable(
+      ['path', 'N', 'half length (Å)', 'σ² (Å²)', 'share'],
+      shown.map((p) => [p.label, p.degeneracy.toFixed(1), p.halfLength.toFixed(4), squared(p.sigma2.thermal), share(p.share)]),
+    ),
+    ...(paths.length > shown.length ? [`… and ${paths.length - shown.length} more paths (--json or --out lists all)`] : []),
+    '',
+    `k²χ(k) from 2 to ${k.at(-1)!.toFixed(1)} Å⁻¹`,
+    smallPlot(weighted, 70, 10),
+    '',
+    ...warnings.map(({ message }) => `Note: ${plain(message)}`),
+    `Computed in ${timing.total.toFixed(2)} s. A prediction that agrees with a measurement shows consistency, never proof.`,
+    ...(out === undefined ? [] : [`Written to ${plain(out)}`]),
+    '',
+  ].join('\n');
+}

@@ -1,0 +1,31 @@
+/** The two figures of a prediction: in k as it is measured, in R as it is looked at. */
+import type { Prediction } from '@ringtrue/core';
+import { lineChart } from './line-chart.js';
+
+const SUPERSCRIPT = ['', '', '²', '³'];
+
+/** kⁿχ(k) from 2 Å⁻¹ on. @param kWeight n, 1 … 3 */
+export function chiInK({ k, chi, structure }: Prediction, kWeight = 3): string {
+  const weighted = k.map((value, i) => value ** kWeight * chi[i]!);
+  const power = SUPERSCRIPT[kWeight] ?? '';
+  return lineChart({
+    curves: [{ x: k, y: weighted, tone: 0 }],
+    xDomain: [2, k.at(-1)!],
+    xLabel: 'k (Å⁻¹)',
+    yLabel: `k${power}χ(k) (Å${['', '⁻¹', '⁻²', '⁻³'][kWeight] ?? ''})`,
+    description: `Predicted EXAFS of ${structure.file}, weighted with k to the power ${kWeight}, against k`,
+  });
+}
+
+/** |χ(R)| to 6 Å. */
+export function chiInR({ transform, structure }: Prediction): string {
+  const { R, real, imaginary, window } = transform;
+  const magnitude = R.map((_, i) => Math.hypot(real[i]!, imaginary[i]!));
+  return lineChart({
+    curves: [{ x: R, y: magnitude, tone: 0 }],
+    xDomain: [0, 6],
+    xLabel: 'R, not phase-corrected (Å)',
+    yLabel: `|χ(R)|, k${SUPERSCRIPT[window.kWeight] ?? ''}-weighted`,
+    description: `Magnitude of the Fourier transform of the predicted EXAFS of ${structure.file}, k from ${window.kMin} to ${window.kMax} per Å`,
+  });
+}
