@@ -229,7 +229,13 @@ export class App extends LitElement {
     this.fault = undefined;
     this.prediction = undefined;
     const { absorber, edge, temperature, debyeTemperature, radius } = this;
-    const outcome = await this.computing.predict(this.candidate.file, this.candidate.text, { absorber, edge, temperature, debyeTemperature, radius });
+    const outcome = await this.computing.predict(this.candidate.file, this.candidate.text, {
+      absorber,
+      edge,
+      temperature,
+      debyeTemperature,
+      radius,
+    });
     if (!outcome) return;
     this.running = false;
     if ('fault' in outcome) this.fault = outcome.fault;

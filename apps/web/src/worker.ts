@@ -1,5 +1,5 @@
 /** All computing happens here, off the page's thread. Faults travel as their message: an Error loses its class on the way. */
-import { predict, type Prediction, type PredictOptions, ReadError, readStructure } from '@ringtrue/core';
+import { type Prediction, type PredictOptions, predict, ReadError, readStructure } from '@ringtrue/core';
 import { expose } from 'comlink';
 
 export type Outcome = { readonly prediction: Prediction } | { readonly fault: string };

@@ -10,7 +10,10 @@ const LARGEST_FILE = 300e6;
 export function readText(path: string): string {
   try {
     const { size } = statSync(path);
-    if (size > LARGEST_FILE) throw new UsageError(`${path}: ${Math.round(size / 1e6)} MB is more than the ${LARGEST_FILE / 1e6} MB that are read; cut out the part around the absorber`);
+    if (size > LARGEST_FILE)
+      throw new UsageError(
+        `${path}: ${Math.round(size / 1e6)} MB is more than the ${LARGEST_FILE / 1e6} MB that are read; cut out the part around the absorber`,
+      );
     return readFileSync(path, 'utf8');
   } catch (error) {
     if (error instanceof UsageError) throw error;

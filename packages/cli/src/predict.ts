@@ -1,6 +1,6 @@
 /** `ringtrue predict`: a structure file to a predicted χ(k). */
 import { basename } from 'node:path';
-import { InputError, predict, type Prediction, type PredictOptions, ReadError, readStructure } from '@ringtrue/core';
+import { InputError, type Prediction, type PredictOptions, predict, ReadError, readStructure } from '@ringtrue/core';
 import { chiInK, chiInR } from '@ringtrue/figures';
 import { csvTable, predictionHtml, tablesOf } from '@ringtrue/report';
 import { type Command, InvalidArgumentError, Option } from 'commander';
@@ -27,7 +27,11 @@ export function addPredict(program: Command): void {
     .option('--temperature <K>', 'temperature of the sample, K (default 300)', number)
     .option('--debye-temperature <K>', 'Debye temperature, K (default: one is assumed, with a warning)', number)
     .addOption(new Option('--thermal <model>', 'thermal disorder').choices(['debye', 'none']).default('debye'))
-    .addOption(new Option('--self-energy <kind>', 'self-energy of the photoelectron').choices(['mean', 'hedin-lundqvist', 'dirac-hara']).default('mean'))
+    .addOption(
+      new Option('--self-energy <kind>', 'self-energy of the photoelectron')
+        .choices(['mean', 'hedin-lundqvist', 'dirac-hara'])
+        .default('mean'),
+    )
     .option('--radius <angstrom>', 'longest half path length, Å (default 5)', number)
     .option('--max-legs <n>', 'most legs of a path (default 2)', number)
     .option('--k-max <k>', 'largest wave number, Å⁻¹ (default 15)', number)
@@ -92,7 +96,10 @@ function filesOf(prediction: Prediction): Map<string, string> {
 }
 
 /** What a reader wants first, in words and three tables. */
-function summary({ structure, options, absorbers, scattering, shells, paths, warnings, k, chi, timing }: Prediction, out: string | undefined): string {
+function summary(
+  { structure, options, absorbers, scattering, shells, paths, warnings, k, chi, timing }: Prediction,
+  out: string | undefined,
+): string {
   const share = (value: number): string => `${(100 * value).toFixed(1)} %`;
   const squared = (value: number): string => value.toFixed(5);
   const weighted = k.map((value, i) => value * value * chi[i]!).filter((_, i) => k[i]! >= 2);
@@ -104,7 +111,14 @@ function summary({ structure, options, absorbers, scattering, shells, paths, war
     '',
     textTable(
       ['shell', 'N', 'mean R (Å)', 'thermal σ² (Å²)', 'static σ² (Å²)', 'share'],
-      shells.map((s) => [s.label, s.count.toFixed(1), s.meanDistance.toFixed(4), squared(s.sigma2.thermal), squared(s.sigma2.static), share(s.share)]),
+      shells.map((s) => [
+        s.label,
+        s.count.toFixed(1),
+        s.meanDistance.toFixed(4),
+        squared(s.sigma2.thermal),
+        squared(s.sigma2.static),
+        share(s.share),
+      ]),
     ),
     '',
     textTable(

@@ -19,7 +19,8 @@ const TYPES: Readonly<Record<string, string>> = {
   '.xyz': 'text/plain; charset=utf-8',
 };
 
-const POLICY = "default-src 'self'; style-src 'self' 'unsafe-inline'; img-src 'self' data: blob:; object-src 'none'; base-uri 'none'; frame-ancestors 'none'";
+const POLICY =
+  "default-src 'self'; style-src 'self' 'unsafe-inline'; img-src 'self' data: blob:; object-src 'none'; base-uri 'none'; frame-ancestors 'none'";
 
 export function addServe(program: Command): void {
   program
@@ -33,7 +34,8 @@ export function addServe(program: Command): void {
 
 function port(text: string): number {
   const value = Number(text);
-  if (!(Number.isInteger(value) && value >= 0 && value <= 65535)) throw new InvalidArgumentError('a whole number from 0 to 65535 is wanted.');
+  if (!(Number.isInteger(value) && value >= 0 && value <= 65535))
+    throw new InvalidArgumentError('a whole number from 0 to 65535 is wanted.');
   return value;
 }
 
@@ -50,7 +52,9 @@ function serve(wanted: number): Promise<void> {
       }
     });
     server.on('error', (error: NodeJS.ErrnoException) => {
-      reject(error.code === 'EADDRINUSE' ? new UsageError(`port ${wanted} is in use; name another with --port, or 0 for any free one`) : error);
+      reject(
+        error.code === 'EADDRINUSE' ? new UsageError(`port ${wanted} is in use; name another with --port, or 0 for any free one`) : error,
+      );
     });
     server.listen(wanted, '127.0.0.1', () => {
       const address = server.address();
@@ -73,6 +77,11 @@ function fileOf(url: string): string | undefined {
 }
 
 function answer(response: ServerResponse, status: number, type: string, body: string | Buffer): void {
-  response.writeHead(status, { 'content-type': type, 'content-security-policy': POLICY, 'x-content-type-options': 'nosniff', 'cache-control': 'no-cache' });
+  response.writeHead(status, {
+    'content-type': type,
+    'content-security-policy': POLICY,
+    'x-content-type-options': 'nosniff',
+    'cache-control': 'no-cache',
+  });
   response.end(body);
 }

@@ -10,7 +10,8 @@ const chart = (y: number[], name?: string) =>
     yLabel: 'y',
     description: 'test',
   });
-const points = (svg: string) => [...svg.match(/class="curve" d="([^"]*)"/)![1]!.matchAll(/[ML]([-\d.]+),([-\d.]+)/g)].map((m) => [Number(m[1]), Number(m[2])] as const);
+const points = (svg: string) =>
+  [...svg.match(/class="curve" d="([^"]*)"/)![1]!.matchAll(/[ML]([-\d.]+),([-\d.]+)/g)].map((m) => [Number(m[1]), Number(m[2])] as const);
 
 test('curve points follow the data linearly', () => {
   const [a, b, c] = points(chart([0, 1, 4]));
@@ -29,5 +30,7 @@ test('text is escaped', () => {
 });
 
 test('x and y must pair', () => {
-  expect(() => lineChart({ curves: [{ x: [1], y: [], tone: 0 }], xDomain: [0, 1], xLabel: '', yLabel: '', description: '' })).toThrow(RangeError);
+  expect(() => lineChart({ curves: [{ x: [1], y: [], tone: 0 }], xDomain: [0, 1], xLabel: '', yLabel: '', description: '' })).toThrow(
+    RangeError,
+  );
 });

@@ -6,7 +6,7 @@ export interface Path {
   readonly legs: number;
   /** Half of the whole route, Å. */
   readonly halfLength: number;
-  /** Number of symmetry-equal and time-reversed routes this one stands for. */
+  /** Number of symmetry-equal and time-reversed routes this one stands for; those over partly occupied atoms count in part. */
   readonly degeneracy: number;
   /** Every route of the group, each as vertices; members[0] equals `vertices`. */
   readonly members: readonly (readonly number[])[];

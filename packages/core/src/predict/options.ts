@@ -47,7 +47,11 @@ export function checkOptions(options: PredictOptions): void {
 }
 
 /** Debye temperature and atom density for one site; what had to be assumed is added to the warnings. */
-export function settleDebye(site: Site, options: PredictOptions, warnings: Diagnostic[]): { debyeTemperature: number; atomDensity: number } {
+export function settleDebye(
+  site: Site,
+  options: PredictOptions,
+  warnings: Diagnostic[],
+): { debyeTemperature: number; atomDensity: number } {
   if (options.debyeTemperature === undefined) {
     warnings.push({
       code: 'debye-temperature-assumed',

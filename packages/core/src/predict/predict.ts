@@ -44,7 +44,11 @@ interface Contribution {
  * @throws {InputError} absorber absent, no such edge, atoms that coincide, options out of range
  * @throws {CancelledError} asked to stop
  */
-export function predict(structure: Structure, wanted: Partial<PredictOptions> & { readonly absorber: string }, context: PredictContext): Prediction {
+export function predict(
+  structure: Structure,
+  wanted: Partial<PredictOptions> & { readonly absorber: string },
+  context: PredictContext,
+): Prediction {
   const options: PredictOptions = { ...DEFAULTS, ...wanted };
   checkOptions(options);
   const now = context.now ?? (() => 0);
@@ -67,15 +71,30 @@ export function predict(structure: Structure, wanted: Partial<PredictOptions> & 
     }
   }
   if (contributions.length === 0) {
-    throw new InputError(`no atom but hydrogen lies within ${options.radius} Å of ${options.absorber}; a larger --radius, or a structure in Å, is wanted`);
+    throw new InputError(
+      `no atom but hydrogen lies within ${options.radius} Å of ${options.absorber}; a larger --radius, or a structure in Å, is wanted`,
+    );
   }
-  if (options.maxLegs > 2) warnings.push({ code: 'single-scattering-only', message: 'Multiple scattering is not computed yet: only two-leg paths are in this prediction.' });
+  if (options.maxLegs > 2)
+    warnings.push({
+      code: 'single-scattering-only',
+      message: 'Multiple scattering is not computed yet: only two-leg paths are in this prediction.',
+    });
   const total = contributions.reduce((sum, { area }) => sum + area, 0) || 1;
   const [first] = signals;
-  const { table, potential, wave } = first!;
+  const { table, potential } = first!;
   const kMax = options.kMax;
   const window = { name: 'hann', kMin: Math.min(WINDOW_START, kMax - 2), kMax, sill: 1, kWeight: K_WEIGHT };
-  const transform = fourierTransform({ k, chi, kWeight: window.kWeight, kMin: window.kMin, kMax, sill: window.sill, window: 'hann', rMax: 8 });
+  const transform = fourierTransform({
+    k,
+    chi,
+    kWeight: window.kWeight,
+    kMin: window.kMin,
+    kMax,
+    sill: window.sill,
+    window: 'hann',
+    rMax: 8,
+  });
   return {
     program: { name: 'ringtrue', version: context.version },
     structure: { file: context.file, format: structure.format, atoms: structure.atoms.length, title: structure.title },
@@ -84,10 +103,17 @@ export function predict(structure: Structure, wanted: Partial<PredictOptions> & 
       label: site.label,
       element: site.element,
       weight: site.weight,
-      neighbours: site.atoms.slice(1).flatMap(({ name, element, distance }) => (distance <= options.radius ? [{ label: name, element, distance }] : [])),
+      neighbours: site.atoms
+        .slice(1)
+        .flatMap(({ name, element, distance }) => (distance <= options.radius ? [{ label: name, element, distance }] : [])),
     })),
     scattering: {
-      atoms: potential.spheres.map(({ element, role, muffinTinRadius, normanRadius }) => ({ element, role, muffinTinRadius, normanRadius })),
+      atoms: potential.spheres.map(({ element, role, muffinTinRadius, normanRadius }) => ({
+        element,
+        role,
+        muffinTinRadius,
+        normanRadius,
+      })),
       interstitialPotentialEv: evFromHartree(potential.interstitialCoulomb),
       fermiLevelEv: evFromHartree(potential.fermiLevel),
       k: table.k,
@@ -95,7 +121,7 @@ export function predict(structure: Structure, wanted: Partial<PredictOptions> & 
     },
     k,
     chi,
-    paths: contributions.map((contribution) => describePath(contribution, options, k, total, wave)),
+    paths: contributions.map((contribution) => describePath(contribution, options, k, total)),
     shells: describeShells(contributions, options, total),
     transform: { R: transform.R, real: transform.real, imaginary: transform.imaginary, window },
     neglected: 0,
@@ -131,7 +157,12 @@ function contributionsOf(signal: SiteSignal, thermal: ThermalModel | undefined, 
   });
 }
 
-function describePath({ site, index, weight, disorder, area }: Contribution, options: PredictOptions, k: Float64Array, total: number, _wave: unknown): PredictedPath {
+function describePath(
+  { site, index, weight, disorder, area }: Contribution,
+  options: PredictOptions,
+  k: Float64Array,
+  total: number,
+): PredictedPath {
   const path = site.paths[index]!;
   const atoms = path.vertices.map((vertex) => site.site.atoms[vertex]!.element);
   const known: PredictedPath = {
@@ -160,14 +191,16 @@ function describeShells(contributions: readonly Contribution[], options: Predict
     return { element, halfLength, degeneracy: degeneracy * weight, thermal: disorder.sigma2, thirdCumulant: disorder.c3 };
   });
   const absorber = contributions[0]!.site.site.element;
-  return groupShells(members, distanceResolution(WINDOW_START, options.kMax)).map(({ element, count, meanDistance, sigma2, members: indices }) => ({
-    label: `${absorber}–${element} ${meanDistance.toFixed(2)} Å`,
-    element,
-    count,
-    meanDistance,
-    sigma2,
-    share: indices.reduce((sum, j) => sum + single[j]!.area, 0) / total,
-  }));
+  return groupShells(members, distanceResolution(WINDOW_START, options.kMax)).map(
+    ({ element, count, meanDistance, sigma2, members: indices }) => ({
+      label: `${absorber}–${element} ${meanDistance.toFixed(2)} Å`,
+      element,
+      count,
+      meanDistance,
+      sigma2,
+      share: indices.reduce((sum, j) => sum + single[j]!.area, 0) / total,
+    }),
+  );
 }
 
 /** What should be known about a site before its prediction is trusted. */
@@ -188,7 +221,10 @@ function siteWarnings(site: Site, radius: number): Diagnostic[] {
       message: `${site.label} stands in an isolated molecule: its outer atoms lack neighbours, which moves the energy origin by about 5 eV and amplitudes by some per cent.`,
     });
     if (reach < radius) {
-      found.push({ code: 'cluster-ends-early', message: `The structure ends ${reach.toFixed(1)} Å from ${site.label}, inside the radius of ${radius} Å: farther shells are missing.` });
+      found.push({
+        code: 'cluster-ends-early',
+        message: `The structure ends ${reach.toFixed(1)} Å from ${site.label}, inside the radius of ${radius} Å: farther shells are missing.`,
+      });
     }
   }
   return found;
@@ -196,9 +232,5 @@ function siteWarnings(site: Site, radius: number): Diagnostic[] {
 
 /** The same sentence once. */
 function unique(diagnostics: readonly Diagnostic[]): Diagnostic[] {
-  const seen = new Set<string>();
-  return diagnostics.filter(({ code, message }) => {
-    const key = `${code} ${message}`;
-    return seen.has(key) ? false : (seen.add(key), true);
-  });
+  return [...new Map(diagnostics.map((diagnostic) => [`${diagnostic.code} ${diagnostic.message}`, diagnostic])).values()];
 }

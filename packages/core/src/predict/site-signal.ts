@@ -54,7 +54,12 @@ export interface StageClock {
  * @throws {InputError} no core level for the edge, or an atom without neighbours
  * @throws {CancelledError} asked to stop
  */
-export function siteSignal(site: Site, { edge, selfEnergy, radius, kMax }: SiteSignalOptions, clock: StageClock, running?: Running): SiteSignal {
+export function siteSignal(
+  site: Site,
+  { edge, selfEnergy, radius, kMax }: SiteSignalOptions,
+  clock: StageClock,
+  running?: Running,
+): SiteSignal {
   const numberOf = (element: string): number => elementBySymbol(element).Z;
   const absorber = numberOf(site.element);
   const width = hartreeFromEv(coreWidthEv(absorber, edge));

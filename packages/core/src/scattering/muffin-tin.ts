@@ -82,7 +82,11 @@ export function buildMuffinTin({ site, kindOfAtom, representatives, atoms, atomO
 
   const surroundings = representatives.map((index) => neighboursOf(site, index));
   const centres = representatives.map((index, kind): Centre => {
-    const shells = surroundings[kind]!.map(({ atom, distance }) => ({ source: antiderivativesOf(atomOf(atom)), distance }));
+    const shells = surroundings[kind]!.map(({ atom, distance }) => ({
+      source: antiderivativesOf(atomOf(atom)),
+      distance,
+      occupancy: site.atoms[atom]!.occupancy,
+    }));
     return overlapAt(atomOf(index), shells);
   });
 
@@ -162,7 +166,7 @@ function neighboursOf(site: Site, centre: number): { atom: number; distance: num
 
 function overlapAt(
   atom: FreeAtom,
-  neighbours: readonly { source: { coulomb: Antiderivative; density: Antiderivative }; distance: number }[],
+  neighbours: readonly { source: { coulomb: Antiderivative; density: Antiderivative }; distance: number; occupancy: number }[],
 ): Centre {
   const lnOuter = Math.log(OUTER_RADIUS);
   const n = Math.ceil((lnOuter - Math.log(1e-3)) / NEIGHBOUR_STEP) + 1;
@@ -173,12 +177,12 @@ function overlapAt(
   // Neighbours of one kind at one distance (1e-6 bohr) are averaged once.
   const shells = new Map<string, { source: { coulomb: Antiderivative; density: Antiderivative }; distance: number; count: number }>();
   const sourceNumbers = new Map<object, number>();
-  for (const { source, distance } of neighbours) {
+  for (const { source, distance, occupancy } of neighbours) {
     if (!sourceNumbers.has(source)) sourceNumbers.set(source, sourceNumbers.size);
     const key = `${sourceNumbers.get(source)} ${Math.round(distance * 1e6)}`;
     const shell = shells.get(key);
-    if (shell) shell.count++;
-    else shells.set(key, { source, distance, count: 1 });
+    if (shell) shell.count += occupancy;
+    else shells.set(key, { source, distance, count: occupancy });
   }
   for (const { source, distance, count } of shells.values()) {
     addOverlap(source.coulomb, distance, count, r, coulomb);

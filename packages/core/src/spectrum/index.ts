@@ -1,9 +1,9 @@
 /** spectrum: k grids, windows, Fourier transforms. Å, Å⁻¹, eV. */
 export { type ComparisonInR, compareInR } from './compare.js';
 export { energyEvFromK, K_STEP, kFromEnergyEv, uniformGridOf, uniformKGrid } from './grid.js';
+export { type Information, informationContent } from './information.js';
 export { InterstitialWave, PathSignal } from './path-signal.js';
 export { type PathDisorder, PathSum } from './path-sum.js';
-export { type Information, informationContent } from './information.js';
 export {
   type BackTransform,
   backTransform,
