@@ -1,26 +1,24 @@
 /**
  * The smooth background under chi(k): a cubic spline in k that carries what transforms below R_low.
  *
- *   minimise  Σ_{R ≤ R_low} |FT[W kʷ (chi − B c)](R)|²  +  ends  +  ridge        over c
+ *   minimise  ∫_0^R_low |FT[W kʷ (chi − B c)]|² dR  +  SHRINKAGE · ∫_0^∞ |FT[kʷ B c]|² dR        over c
  *
- * after Newville, Livins, Yacoby, Rehr & Stern, Phys. Rev. B 47, 14126 (1993). The knots lie at whole multiples of
+ * The first term after Newville, Livins, Yacoby, Rehr & Stern, Phys. Rev. B 47, 14126 (1993). The knots lie at whole multiples of
  * π/(2 R_low), the spacing at which a spline reaches R_low and no further (2 R_low k_max/π + 1 of them); being fixed in k
  * they do not jump when k_max moves by a point. The solution is linear in chi, so what it does to a measured spectrum can
  * be done to a predicted one: compare the two only after both went through it.
  *
- * Ends: the transform's window leaves the spline free where it vanishes. There the spline is drawn to the local course of
- * chi itself, with END_WEIGHT of the mean weight of a point. Ridge: RIDGE of the mean diagonal, against splines that barely
- * reach into the data. Both values are common practice without a source; halving or doubling either moves chi by less than 1e-3
- * above k = 3 on the measured standards.
+ * The second term holds what the first leaves free, the ends where the window vanishes and courses at the very edge of R_low: a spline of
+ * which less than that share of power is seen below R_low is drawn to zero, which is the post-edge curve of the reduction. Without it the
+ * ends ring. Its size is our choice: the ringing is gone, and a smooth course is left standing by no more than that share.
  */
 
 import { CholeskyDecomposition, Matrix } from 'ml-matrix';
 import { uniformGridOf, windowValues } from '../spectrum/index.js';
 
-const END_WEIGHT = 0.02;
-const RIDGE = 1e-6;
-/** Å⁻¹, width of the zones where the end weight fades out. */
-const END_ZONE = 1;
+const SHRINKAGE = 0.001;
+/** Å⁻¹: below it the weight of the shrinkage falls no further, or the spline would be free where the k-weight vanishes. */
+const K_FLOOR = 2;
 /** Points in R between 0 and R_low: a fixed number, so that nothing jumps when R_low moves; 0.05 Å apart at most 1.6 Å. */
 const R_POINTS = 32;
 
@@ -62,7 +60,8 @@ export function backgroundProjector(k: Float64Array, settings: BackgroundSetting
   const n = k.length;
   const { rLow = 1, kWeight = 2, kMin = k[0]!, kMax = k[n - 1]! } = settings;
   if (!(rLow >= 0.2 && rLow <= 3)) throw new RangeError(`background: R_low must lie between 0.2 and 3 Å, got ${rLow}`);
-  const window = windowValues(k, { window: 'hann', kMin, kMax, sill: Math.min(1, (kMax - kMin) / 2) });
+  // Flat down to kMin: the k-weight lets the low end fade by itself
+  const window = windowValues(k, { window: 'hann', kMin: kMin - 1, kMax, sill: Math.min(1, (kMax - kMin) / 2) });
 
   const spacing = Math.PI / (2 * rLow);
   const firstKnot = Math.floor(k[0]! / spacing) - 1;
@@ -94,18 +93,12 @@ export function backgroundProjector(k: Float64Array, settings: BackgroundSetting
     addRow(0, n);
   }
 
-  let trace = 0;
-  for (let j = 0; j < M; j++) trace += normal[j * M + j]!;
-  let power = 0;
-  for (let i = 0; i < n; i++) power += weight[i]! ** 2;
-  const endWeight = END_WEIGHT * Math.sqrt((step * rLow * power) / (Math.PI * n));
   for (let i = 0; i < n; i++) {
-    const fade = Math.max(0, 1 - (k[i]! - kMin) / END_ZONE, 1 - (kMax - k[i]!) / END_ZONE);
-    if (fade === 0) continue;
-    row[i] = endWeight * Math.min(1, fade);
-    addRow(i, i + 1);
+    const power = 0.5 * SHRINKAGE * (k[i]! ** 2 + K_FLOOR ** 2) ** kWeight; // half of Parseval's sum lies at R > 0
+    for (let j = 0; j < M; j++) for (let l = 0; l < M; l++) normal[j * M + l]! += power * (B[i * M + j]! * B[i * M + l]!);
   }
-  for (let j = 0; j < M; j++) normal[j * M + j]! += (RIDGE * trace) / M;
+  // A spline that reaches no point of weight would leave its row empty
+  for (let j = 0; j < M; j++) normal[j * M + j]! += Number.MIN_VALUE + 1e-12 * normal[(M >> 1) * (M + 1)]!;
 
   const solved = new CholeskyDecomposition(Matrix.from1DArray(M, M, normal)).solve(Matrix.from1DArray(M, n, right));
   const P = Float64Array.from(solved.to1DArray()); // (M, n)
