@@ -7,8 +7,8 @@
  * far more precise than the place of the largest slope, and it needs no model of the edge.
  */
 
-import { leastSquares, softRange } from './leastSquares.js';
-import { applyMap, interpolate, localFit, localSpacing } from './localFit.js';
+import { leastSquares, softRange } from './least-squares.js';
+import { applyMap, interpolate, localFit, localSpacing } from './local-fit.js';
 
 /** eV around the edge in which scans are compared. */
 const EDGE_REGION = [-30, 60] as const;

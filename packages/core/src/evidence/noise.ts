@@ -8,7 +8,7 @@
  */
 
 import { backTransform, fourierTransform, K_STEP, type TransformSettings, transformPlan } from '../spectrum/index.js';
-import type { SparseMap } from './localFit.js';
+import type { SparseMap } from './local-fit.js';
 
 const NOISE_RANGE = [15, 25] as const;
 const SIGNAL_RANGE = [1, 5] as const;

@@ -9,8 +9,8 @@
  */
 
 import { InputError } from '../errors.js';
-import { leastSquares, softRange } from './leastSquares.js';
-import { applyMap, localFit, localSpacing } from './localFit.js';
+import { leastSquares, softRange } from './least-squares.js';
+import { applyMap, localFit, localSpacing } from './local-fit.js';
 
 const SHELL_EXPONENT = -2.7;
 /** eV, half width of the smoothing for the slope: about the width of a 3d metal's core level. */

@@ -12,11 +12,11 @@ import { type Diagnostic, InputError } from '../errors.js';
 import { fourierTransform, K_STEP, kFromEnergyEv, uniformKGrid } from '../spectrum/index.js';
 import { mergeScans, type Shift } from './align.js';
 import { backgroundProjector } from './background.js';
-import { applyMap, indexBelow, localFit, mapUncertainty } from './localFit.js';
+import { applyMap, indexBelow, localFit, mapUncertainty } from './local-fit.js';
 import { estimateNoise, type Noise } from './noise.js';
 import { atomicDecay, normalise, steepestRise } from './normalise.js';
-import { findGlitches, type Glitch, pointNoise } from './pointNoise.js';
-import { type SelfAbsorption, selfAbsorptionFactors } from './selfAbsorption.js';
+import { findGlitches, type Glitch, pointNoise } from './point-noise.js';
+import { type SelfAbsorption, selfAbsorptionFactors } from './self-absorption.js';
 import type { AbsorptionScan, ChiScan, MeasuredScan } from './types.js';
 
 /** Å⁻¹, half width of the averaging onto the grid: 1.6 grid steps, so that neighbouring points share little noise. */
@@ -119,7 +119,7 @@ export function findEdge(scan: AbsorptionScan, element: string | undefined, edge
   return near.e0;
 }
 
-function rangesFor(
+export function rangesFor(
   scan: { readonly energyEv: Float64Array },
   e0: number,
   options: ReduceOptions,

@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { directTransform } from '../../../../test/reference/directTransform.js';
+import { directTransform } from '../../../../test/reference/direct-transform.js';
 import { expectNear } from '../../../../test/support/expect-near.js';
 import { seededRandom } from '../../../../test/support/random.js';
 import { compareInR } from './compare.js';

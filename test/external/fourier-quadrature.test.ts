@@ -3,12 +3,13 @@ import { uniformKGrid } from '../../packages/core/src/spectrum/grid.js';
 import { informationContent } from '../../packages/core/src/spectrum/information.js';
 import { transformPlan } from '../../packages/core/src/spectrum/transform.js';
 import { type WindowName, windowValues } from '../../packages/core/src/spectrum/windows.js';
-import { directTransform } from '../reference/directTransform.js';
-import { readCsv } from '../support/csv.js';
+import { directTransform } from '../reference/direct-transform.js';
+
 import { expectNear } from '../support/expect-near.js';
+import { readTable } from '../support/table.js';
 
 // Windows and transforms against values computed independently (mpmath, 40 digits; sources in the first line of each file).
-const table = (name: string) => readCsv(new URL(`data/${name}.csv`, import.meta.url));
+const table = (name: string) => readTable(`${name}.csv`);
 
 /** The tables' window names in ours: full windows are sills of half the range. */
 function windowFrom(name: string, parameter: number, kMin: number, kMax: number) {
