@@ -8,6 +8,7 @@ export type { SelfEnergyName } from './scattering/types.js';
 export {
   type Atom,
   type Cell,
+  describeSites,
   findSites,
   frameOf,
   type ReadOptions,
@@ -15,6 +16,7 @@ export {
   type Site,
   type SiteAtom,
   type SiteOptions,
+  type SitesDescription,
   type Structure,
   type XyzFrame,
   XyzFrames,
