@@ -11,7 +11,8 @@
 import { EigenvalueDecomposition, Matrix } from 'ml-matrix';
 import { ATOMIC_MASS_KG, BOLTZMANN_EV_PER_K, ELEMENTARY_CHARGE, HBAR_JS } from '../constants.js';
 import type { Vec3 } from '../structure/types.js';
-import { HBAR2_PER_U_KB, KELVIN_PER_WAVENUMBER, occupation } from './oscillator.js';
+import { combine, reciprocal } from './lattice.js';
+import { KELVIN_PER_WAVENUMBER } from './oscillator.js';
 import type { SpringBody, SpringTerm } from './spring-terms.js';
 
 /** ħω/k_B in K of λ = 1 (mdyn/Å)/u. */
@@ -103,22 +104,9 @@ function liftRigid(h: Matrix, basis: readonly Float64Array[], top: number): void
   }
 }
 
-/** Largest eigenvalue of the bare Hessian's rigid motions over its trace mean: how well the zero modes are zero before projection. */
-export function rigidResidual(body: SpringBody, terms: readonly SpringTerm[]): number {
+/** Normal modes of a body that does not repeat, without the rigid motions given. */
+export function bodyModes(body: SpringBody, terms: readonly SpringTerm[], basis: readonly Float64Array[]): ModeSet {
   const h = massWeightedHessian(body, terms);
-  const largest = Math.max(...new EigenvalueDecomposition(h, { assumeSymmetric: true }).realEigenvalues);
-  return Math.max(
-    ...rigidMotions(body).map((v) => {
-      const column = Matrix.columnVector(v);
-      return Math.abs(column.transpose().mmul(h).mmul(column).get(0, 0)) / largest;
-    }),
-  );
-}
-
-/** Normal modes of a free body without its rigid motions. */
-export function freeModes(body: SpringBody, terms: readonly SpringTerm[]): ModeSet {
-  const h = massWeightedHessian(body, terms);
-  const basis = rigidMotions(body);
   let trace = 0;
   for (let i = 0; i < h.rows; i++) trace += h.get(i, i);
   liftRigid(h, basis, 2 * trace + 1);
@@ -129,7 +117,7 @@ export function freeModes(body: SpringBody, terms: readonly SpringTerm[]): ModeS
 
 /** Modes of a crystal over the mesh of `divisions`. */
 export function latticeModes(body: SpringBody, terms: readonly SpringTerm[], divisions: readonly [number, number, number]): ModeSet[] {
-  const reciprocal = reciprocalVectors(body.lattice!);
+  const inverse = reciprocal(body.lattice!);
   const sets: ModeSet[] = [];
   const total = divisions[0] * divisions[1] * divisions[2];
   for (let i = 0; i < divisions[0]; i++)
@@ -140,9 +128,7 @@ export function latticeModes(body: SpringBody, terms: readonly SpringTerm[], div
         const order = index.map((x, c) => x - mirror[c]!).find((d) => d !== 0) ?? 0;
         if (order > 0) continue; // its time-reversed partner stands for it
         const f = index.map((x, c) => (x + 0.5) / divisions[c]!);
-        const q = [0, 1, 2].map(
-          (c) => f[0]! * reciprocal[0]![c]! + f[1]! * reciprocal[1]![c]! + f[2]! * reciprocal[2]![c]!,
-        ) as unknown as Vec3;
+        const q = combine(inverse, f.map((x) => 2 * Math.PI * x) as unknown as Vec3);
         sets.push(modesAt(body, terms, q, (order === 0 ? 1 : 2) / total));
       }
   return sets;
@@ -200,15 +186,7 @@ function symmetricModes(h: Matrix): { values: Float64Array; vectors: Float64Arra
   return { values, vectors };
 }
 
-function reciprocalVectors([a, b, c]: readonly [Vec3, Vec3, Vec3]): readonly [Vec3, Vec3, Vec3] {
-  const cross = (u: Vec3, v: Vec3): Vec3 => [u[1] * v[2] - u[2] * v[1], u[2] * v[0] - u[0] * v[2], u[0] * v[1] - u[1] * v[0]];
-  const bc = cross(b, c);
-  const f = (2 * Math.PI) / (a[0] * bc[0] + a[1] * bc[1] + a[2] * bc[2]);
-  const scale = (v: Vec3): Vec3 => [f * v[0], f * v[1], f * v[2]];
-  return [scale(bc), scale(cross(c, a)), scale(cross(a, b))];
-}
-
-/** |Σ g·e e^{iqR}/√M|² of each mode of a set, called with the mode's ħω/k_B. */
+/** Each mode's ħω/k_B and its weighted overlap |Σ g·e e^{iqR}/√M|² with a route. */
 export function forEachOverlap(
   set: ModeSet,
   body: SpringBody,
@@ -236,19 +214,6 @@ export function forEachOverlap(
       x += cos[p]! * re - sin[p]! * im;
       y += cos[p]! * im + sin[p]! * re;
     }
-    visit(set.theta[s]!, x * x + y * y);
+    visit(set.theta[s]!, set.weight * (x * x + y * y));
   }
-}
-
-/** ⟨(Σ g·u)²⟩, Å². */
-export function projectedMeanSquare(sets: readonly ModeSet[], body: SpringBody, pulls: readonly Pull[], temperature: number): number {
-  let sum = 0;
-  for (const set of sets) {
-    let part = 0;
-    forEachOverlap(set, body, pulls, (theta, squared) => {
-      if (theta > 0) part += (squared * occupation(theta, temperature)) / theta;
-    });
-    sum += set.weight * part;
-  }
-  return 0.5 * HBAR2_PER_U_KB * sum;
 }

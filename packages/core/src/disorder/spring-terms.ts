@@ -12,6 +12,7 @@
  */
 import { InputError } from '../errors.js';
 import type { Vec3 } from '../structure/types.js';
+import { combine, cross, dot3, type Lattice, reciprocal } from './lattice.js';
 import { bondOrder, isBendable, type SpringForm, TORSION } from './spring-forms.js';
 import { isMetal, springConstantsOf } from './spring-parameters.js';
 
@@ -26,7 +27,9 @@ export interface SpringAtom {
 /** Atoms and, for a crystal, the three lattice vectors they repeat by (Å). */
 export interface SpringBody {
   readonly atoms: readonly SpringAtom[];
-  readonly lattice?: readonly [Vec3, Vec3, Vec3];
+  readonly lattice?: Lattice;
+  /** Atoms at the cut of a cluster taken out of something larger. */
+  readonly edge?: readonly number[];
 }
 
 export interface SpringTerm {
@@ -64,7 +67,44 @@ export function springTerms(body: SpringBody, form: SpringForm): SpringTerm[] {
     for (const nb of bonds[i]!) if (isFirst(i, nb)) addTorsions(body, i, nb, bonds, terms);
     addContacts(body, i, near[i]!, bonds, terms);
   }
+  holdEdge(body, terms);
   return terms;
+}
+
+/**
+ * Holds each atom at the cut to its place by an isotropic spring that brings its own stiffness up to the mean of the
+ * inner atoms (of its element, where there are any): what the missing neighbours, standing still, would add.
+ */
+function holdEdge(body: SpringBody, terms: SpringTerm[]): void {
+  if (!body.edge || body.edge.length === 0) return;
+  const stiffness = new Float64Array(body.atoms.length);
+  for (const { k, atoms, b } of terms) for (let m = 0; m < b.length; m++) stiffness[atoms[Math.floor(m / 3)]!]! += (k * b[m]! * b[m]!) / 3;
+  const edge = new Set(body.edge);
+  const inner = body.atoms.map((_, i) => i).filter((i) => !edge.has(i));
+  const mean = (list: readonly number[]) => list.reduce((sum, i) => sum + stiffness[i]!, 0) / list.length;
+  for (const i of edge) {
+    const like = inner.filter((j) => body.atoms[j]!.element === body.atoms[i]!.element);
+    const wanted = mean(like.length > 0 ? like : inner);
+    const k = Math.max(0.05 * wanted, wanted - stiffness[i]!);
+    for (let c = 0; c < 3; c++) {
+      const b = new Float64Array(3);
+      b[c] = 1;
+      terms.push({ k, atoms: [i], positions: place(body, i, [0, 0, 0]), b });
+    }
+  }
+}
+
+/** Whether the springs join all atoms into one piece. */
+export function isOnePiece(count: number, terms: readonly SpringTerm[]): boolean {
+  const parent = Int32Array.from({ length: count }, (_, i) => i);
+  const root = (i: number): number => {
+    let r = i;
+    while (parent[r] !== r) r = parent[r]!;
+    parent[i] = r;
+    return r;
+  };
+  for (const { atoms } of terms) for (const a of atoms) parent[root(a)] = root(atoms[0]!);
+  return parent.every((_, i) => root(i) === root(0));
 }
 
 /** Of a pair listed from both ends, one is first. */
@@ -99,19 +139,15 @@ function neighbourhoods(body: SpringBody): Neighbour[][] {
 
 function latticeShifts(lattice: SpringBody['lattice'], reach: number, atoms: readonly SpringAtom[]): Vec3[] {
   if (!lattice) return [[0, 0, 0]];
-  const [a, b, c] = lattice;
-  const cross = (u: Vec3, v: Vec3): Vec3 => [u[1] * v[2] - u[2] * v[1], u[2] * v[0] - u[0] * v[2], u[0] * v[1] - u[1] * v[0]];
-  const volume = Math.abs(a[0] * cross(b, c)[0] + a[1] * cross(b, c)[1] + a[2] * cross(b, c)[2]);
-  if (!(volume > 1e-3)) throw new InputError(`spring network: the cell has no volume (${volume} Å³)`);
+  const inverse = reciprocal(lattice);
   // Atoms of one cell may be written up to their own extent apart.
   const extent = Math.max(0, ...atoms.map((p) => Math.hypot(...p.position.map((x, i) => x - atoms[0]!.position[i]!))));
-  const count = (u: Vec3, v: Vec3) => Math.ceil(((reach + 2 * extent) * Math.hypot(...cross(u, v))) / volume);
-  const [na, nb, nc] = [count(b, c), count(c, a), count(a, b)];
+  const [na, nb, nc] = inverse.map((row) => Math.ceil((reach + 2 * extent) * Math.hypot(...row))) as unknown as Vec3;
   const shifts: Vec3[] = [];
   for (let i = -na; i <= na; i++)
     for (let j = -nb; j <= nb; j++)
       for (let k = -nc; k <= nc; k++) {
-        const s: Vec3 = [i * a[0] + j * b[0] + k * c[0], i * a[1] + j * b[1] + k * c[1], i * a[2] + j * b[2] + k * c[2]];
+        const s = combine(lattice, [i, j, k]);
         if (Math.hypot(...s) <= reach + 2 * extent) shifts.push(s);
       }
   return shifts;
@@ -237,13 +273,11 @@ function addTorsions(body: SpringBody, j: number, mid: Neighbour, bonds: readonl
 
 /** ∂φ/∂(i, j, k, l) with a = i − j, m = k − j, l = l − k (Blondel & Karplus, J. Comput. Chem. 17, 1132 (1996)). */
 function torsionDerivatives(a: Vec3, m: Vec3, l: Vec3): Float64Array {
-  const cross = (u: Vec3, v: Vec3): Vec3 => [u[1] * v[2] - u[2] * v[1], u[2] * v[0] - u[0] * v[2], u[0] * v[1] - u[1] * v[0]];
-  const dot = (u: Vec3, v: Vec3) => u[0] * v[0] + u[1] * v[1] + u[2] * v[2];
   const [F, G, H]: [Vec3, Vec3, Vec3] = [a, [-m[0], -m[1], -m[2]], l];
   const [A, B] = [cross(F, G), cross([H[0], H[1], H[2]], G)];
   const g = Math.hypot(...G);
-  const [a2, b2] = [dot(A, A), dot(B, B)];
-  const [fg, hg] = [dot(F, G), dot(H, G)];
+  const [a2, b2] = [dot3(A, A), dot3(B, B)];
+  const [fg, hg] = [dot3(F, G), dot3(H, G)];
   const out = new Float64Array(12);
   for (let c = 0; c < 3; c++) {
     const di = (-g / a2) * A[c]!;
