@@ -1,7 +1,25 @@
 /** Disorder, thermal and static: σ² of every path from a stated model, and the spread the geometry has. Å, Å², K, u. */
+export type { BondFrequency } from './bond-frequencies.js';
+export { BOND_FREQUENCIES } from './bond-frequencies.js';
 export type { DebyeInput } from './debye.js';
 export { correlatedDebye } from './debye.js';
+export type { DebyeTemperature } from './debye-temperatures.js';
+export { DEFAULT_ATOM_DENSITY, DEFAULT_DEBYE_TEMPERATURE, defaultDebyeTemperature } from './debye-temperatures.js';
+export type { EinsteinInput } from './einstein.js';
+export { bondKind, einsteinByBond } from './einstein.js';
+export type { Cumulants, Frame, FrameAtom } from './ensemble.js';
+export { cumulantAverage, cumulants, exactAverage, halfLengths } from './ensemble.js';
+export { harmonicFrame } from './harmonic-sample.js';
 export { distributionPhase, MORSE_EXPONENT, morseThirdCumulant, thirdCumulantPhase } from './phase-terms.js';
 export type { Shell, ShellPath, ShellSignal } from './shells.js';
 export { distanceResolution, groupShells, hiddenByOneShell } from './shells.js';
+export type { MassOf } from './spring-body.js';
+export { springBodyOfCrystal, springBodyOfSite } from './spring-body.js';
+export type { SpringForm } from './spring-forms.js';
+export { badger, lindh, orderedUff, plainUff, schlegel } from './spring-forms.js';
+export type { SpringAtom, SpringBody } from './spring-terms.js';
+export type { SpringModel, SpringOptions } from './springs.js';
+export { springNetwork } from './springs.js';
+export type { ThermalSuggestion } from './suggest.js';
+export { suggestThermalModel } from './suggest.js';
 export type { ThermalModel, ThermalVertex } from './types.js';

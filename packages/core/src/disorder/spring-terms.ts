@@ -5,7 +5,7 @@
  *
  *  stretch  pairs of Pauling bond order ≥ 0.04
  *  bend     pairs of bonds at one atom, not among metals alone; two components when nearly straight
- *  torsion  about every bond that is no part of a straight chain; metals turn freely
+ *  torsion  about every bond but one of two metals, ends in a straight line with it left out
  *  contact  pairs bound to each other by neither bond nor angle, near their van der Waals distance r₁ + 1.6 Å (Pauling,
  *           The Nature of the Chemical Bond (1960), ch. 7: radius = covalent + 0.8): curvature of a Lennard-Jones minimum
  *           of depth 0.1 kcal/mol (the middle of the UFF range), its repulsive wall beyond
@@ -247,7 +247,7 @@ function bendDirections(u: Vec3, v: Vec3, cosine: number): (readonly [Vec3, Vec3
 /** Torsions i–j–k–l about the bond j–k, shared out evenly so that a bond has one constant however many ends it carries. */
 function addTorsions(body: SpringBody, j: number, mid: Neighbour, bonds: readonly Neighbour[][], terms: SpringTerm[]): void {
   const elementOf = (index: number) => body.atoms[index]!.element;
-  if (isMetal(elementOf(j)) || isMetal(elementOf(mid.atom))) return; // coordination bonds turn freely
+  if (isMetal(elementOf(j)) && isMetal(elementOf(mid.atom))) return;
   const axis = unit(mid);
   const bent = (nb: Neighbour, sign: number) => {
     const e = unit(nb);
