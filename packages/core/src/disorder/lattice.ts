@@ -1,5 +1,6 @@
 /** Vectors of a repeating body, Å. */
 import { InputError } from '../errors.js';
+import { cellGeometry } from '../structure/cell.js';
 import type { Cell, Vec3 } from '../structure/types.js';
 
 export type Lattice = readonly [a: Vec3, b: Vec3, c: Vec3];
@@ -23,16 +24,11 @@ export const combine = ([a, b, c]: Lattice, f: Vec3): Vec3 => [
   f[0] * a[2] + f[1] * b[2] + f[2] * c[2],
 ];
 
-/** Lattice vectors of a cell in the usual axes: a along x, b in the xy plane. */
+/** Lattice vectors of a file's cell, in the file's axes. @throws {InputError} the cell is impossible */
 export function latticeOf(cell: Cell): Lattice {
-  const [alpha, beta, gamma] = [cell.alpha, cell.beta, cell.gamma].map((x) => (x * Math.PI) / 180) as [number, number, number];
-  const cx = cell.c * Math.cos(beta);
-  const cy = (cell.c * (Math.cos(alpha) - Math.cos(beta) * Math.cos(gamma))) / Math.sin(gamma);
-  return [
-    [cell.a, 0, 0],
-    [cell.b * Math.cos(gamma), cell.b * Math.sin(gamma), 0],
-    [cx, cy, Math.sqrt(Math.max(0, cell.c * cell.c - cx * cx - cy * cy))],
-  ];
+  const m = cellGeometry(cell).toCartesian;
+  const column = (i: number): Vec3 => [m[i]!, m[3 + i]!, m[6 + i]!];
+  return [column(0), column(1), column(2)];
 }
 
 /** The copy of d by lattice vectors nearest to zero (of those next to the rounded one; exact for cells not too oblique). */

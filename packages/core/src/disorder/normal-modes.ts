@@ -12,13 +12,10 @@ import { EigenvalueDecomposition, Matrix } from 'ml-matrix';
 import { ATOMIC_MASS_KG, BOLTZMANN_EV_PER_K, ELEMENTARY_CHARGE, HBAR_JS } from '../constants.js';
 import type { Vec3 } from '../structure/types.js';
 import { combine, reciprocal } from './lattice.js';
-import { KELVIN_PER_WAVENUMBER } from './oscillator.js';
 import type { SpringBody, SpringTerm } from './spring-terms.js';
 
 /** ħω/k_B in K of λ = 1 (mdyn/Å)/u. */
 export const KELVIN_PER_ROOT = (HBAR_JS * Math.sqrt(100 / ATOMIC_MASS_KG)) / (BOLTZMANN_EV_PER_K * ELEMENTARY_CHARGE);
-/** cm⁻¹ of λ = 1: 1302.79. */
-export const WAVENUMBER_PER_ROOT = KELVIN_PER_ROOT / KELVIN_PER_WAVENUMBER;
 
 /** Modes of one q; `vectors` holds real and imaginary parts, mode by mode: (modes × 2 × 3n), imaginary absent at q = 0. */
 export interface ModeSet {

@@ -42,10 +42,12 @@ export function springBodyOfSite(site: Site, massOf: MassOf): SpringBody {
 /**
  * The whole cell of a crystal, expanded by its operators, as a repeating spring body.
  *
- * @throws {InputError} no cell, or no atoms
+ * @throws {InputError} no cell, a cell that repeats in less than three dimensions, or no atoms
  */
 export function springBodyOfCrystal(structure: Structure, massOf: MassOf): SpringBody {
   if (!structure.cell) throw new InputError('spring network: the structure has no cell to repeat by');
+  if (structure.repeats?.includes(false))
+    throw new InputError('spring network: a slab or wire does not repeat in three dimensions; use its cluster');
   if (structure.atoms.length === 0) throw new InputError('spring network: the structure has no atoms');
   const lattice = latticeOf(structure.cell);
   const inverse = reciprocal(lattice);
