@@ -1,7 +1,9 @@
 #!/usr/bin/env node
 /** The `ringtrue` command. */
 import { Command, CommanderError } from 'commander';
+import { addDose } from './dose.js';
 import { addPredict } from './predict.js';
+import { addReduce } from './reduce.js';
 import { addServe } from './serve.js';
 import { VERSION } from './version.js';
 
@@ -12,6 +14,8 @@ const program = new Command('ringtrue')
   .exitOverride();
 
 addPredict(program);
+addReduce(program);
+addDose(program);
 addServe(program);
 
 try {

@@ -2,9 +2,38 @@
 export type { Edge } from './atom/types.js';
 export * as constants from './constants.js';
 export { CancelledError, ConvergenceError, type Diagnostic, InputError, ReadError, type Running } from './errors.js';
+export {
+  type BackgroundProjector,
+  type BackgroundSettings,
+  backgroundProjector,
+  type ColumnRoles,
+  type DoseReport,
+  dose,
+  type MeasuredScan,
+  type Noise,
+  parseColumnRoles,
+  type ReadOptions as ScanReadOptions,
+  type ReduceOptions,
+  type Reduction,
+  readScan,
+  readXdi,
+  reduce,
+  writeXdi,
+  type XdiContent,
+  type XdiFile,
+} from './evidence/index.js';
 export { type PredictContext, predict } from './predict/predict.js';
 export type { PredictedNeighbour, PredictedPath, PredictedShell, Prediction, PredictOptions } from './predict/types.js';
 export type { SelfEnergyName } from './scattering/types.js';
+export {
+  backTransform,
+  compareInR,
+  fourierTransform,
+  informationContent,
+  type Transform,
+  type TransformSettings,
+  type WindowName,
+} from './spectrum/index.js';
 export {
   type Atom,
   type Cell,

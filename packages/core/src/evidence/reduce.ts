@@ -12,7 +12,7 @@ import { type Diagnostic, InputError } from '../errors.js';
 import { fourierTransform, K_STEP, kFromEnergyEv, uniformKGrid } from '../spectrum/index.js';
 import { mergeScans, type Shift } from './align.js';
 import { backgroundProjector } from './background.js';
-import { applyMap, indexBelow, localFit, mapUncertainty } from './local-fit.js';
+import { applyMap, indexBelow, localFit, mapUncertainty, type SparseMap } from './local-fit.js';
 import { estimateNoise, type Noise } from './noise.js';
 import { atomicDecay, normalise, steepestRise } from './normalise.js';
 import { findGlitches, type Glitch, pointNoise } from './point-noise.js';
@@ -284,7 +284,7 @@ function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptio
 function noiseOf(
   k: Float64Array,
   chi: Float64Array,
-  origin: { readonly map: ReturnType<typeof localFit>; readonly sigma: Float64Array; readonly repeated: boolean },
+  origin: { readonly map: SparseMap; readonly sigma: Float64Array; readonly repeated: boolean },
 ) {
   const last = k.at(-1)!;
   const settings = { kWeight: 2, kMin: Math.min(3, last / 3), kMax: last };
@@ -305,6 +305,18 @@ function selfAbsorptionRisk(energyEv: Float64Array, mu: Float64Array, e0: number
   return { code: 'self-absorption-risk', message };
 }
 
+/** chi that stands on the grid already is taken as it is: averaging it again would damp it. */
+function samePoints(from: Float64Array, k: Float64Array): SparseMap | undefined {
+  const first = k.map((q) => from.findIndex((x) => Math.abs(x - q) < 1e-6));
+  if (first.includes(-1)) return undefined;
+  return {
+    rows: k.length,
+    first: Int32Array.from(first),
+    start: Int32Array.from({ length: k.length + 1 }, (_, i) => i),
+    weights: k.map(() => 1),
+  };
+}
+
 /** Ready chi(k): brought onto the grid and averaged; nothing is projected, since the reduction is not known. */
 function reduceChi(scans: readonly ChiScan[], options: ReduceOptions): Reduction {
   const end = Math.min(...scans.map((scan) => scan.k.at(-1)!));
@@ -314,7 +326,7 @@ function reduceChi(scans: readonly ChiScan[], options: ReduceOptions): Reduction
     throw new InputError(`chi(k) runs from ${begin.toFixed(2)} to ${kMax.toFixed(2)} Å⁻¹; a range of 4 Å⁻¹ is needed`);
   const k = uniformKGrid(kMax).filter((q) => q >= begin - 1e-9);
   const onGrid = scans.map((scan) => {
-    const map = localFit(scan.k, k, AVERAGING, 0);
+    const map = samePoints(scan.k, k) ?? localFit(scan.k, k, AVERAGING, 0);
     return { map, chi: applyMap(map, scan.chi), sigma: pointNoise(scan.k, scan.chi).sigma };
   });
   const n = scans.length;

@@ -180,7 +180,8 @@ function checkFields(
   const abscissa = find('Column.1');
   if (!abscissa) note('xdi-no-column-1', 'the required field Column.1 is missing');
   const unit = units[0]!.toLowerCase();
-  if (abscissa && !UNITS.has(unit))
+  const transformed = /^(k|r)\b/i.test(abscissa?.value ?? ''); // the dictionary has these words, but its units are those of a scan
+  if (abscissa && !transformed && !UNITS.has(unit))
     note('xdi-no-unit', `Column.1 should name its unit (eV, keV, degrees, …), found "${abscissa.value}"`, abscissa.line);
   const dSpacing = find('Mono.d_spacing');
   const d = Number(dSpacing?.value || Number.NaN);
