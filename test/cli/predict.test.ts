@@ -111,7 +111,7 @@ test('a structure turned, moved and listed in another order gives the same χ', 
   const first = chi(file('a.xyz', xyz(atoms)));
   const second = chi(file('b.xyz', xyz(moved)));
   // 1e-12 Å of rounding in the coordinates; sums in another order.
-  first.forEach((value, i) => expectNear(second[i]!, value, { abs: 1e-8, label: `χ at point ${i}` }));
+  for (const [i, value] of first.entries()) expectNear(second[i]!, value, { abs: 1e-8, label: `χ at point ${i}` });
 });
 
 const bad: readonly (readonly [what: string, args: () => string[], message: RegExp])[] = [
