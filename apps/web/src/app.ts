@@ -71,7 +71,7 @@ export class App extends LitElement {
         <strong>${this.candidate ? this.candidate.file : 'Drop a structure here'}</strong>
         <span>XYZ, PDB, mmCIF or CIF</span>
         <label class="file"
-          >Choose a file
+          >Or choose a file
           <input
             type="file"
             @change=${(event: Event) => void this.take((event.target as HTMLInputElement).files?.[0])}
@@ -116,7 +116,7 @@ export class App extends LitElement {
               this.absorber = (event.target as HTMLInputElement).value.trim();
             }}
           />
-          <span class="unit">element</span>
+          <span class="unit"></span>
         </label>
         <label>
           <span>Edge</span>
@@ -243,6 +243,9 @@ export class App extends LitElement {
   }
 
   static override styles = css`
+    :host * {
+      box-sizing: border-box;
+    }
     :host { display: block; max-width: 1280px; margin: 0 auto; padding: 0 1.25rem; }
     header { display: flex; flex-wrap: wrap; align-items: baseline; gap: 0 1.25rem; padding: 1rem 0; border-bottom: 2px solid var(--accent); }
     h1 { font-size: 1.35rem; font-weight: 650; letter-spacing: 0.01em; margin: 0; }

@@ -30,7 +30,7 @@ export interface LineChart {
 
 /** Six tones told apart with any colour vision and on light and dark ground; our own values. */
 const TONES = ['#1f5fa8', '#c4571a', '#2f8f6b', '#8a5bb0', '#a08a1c', '#6b7480'];
-const MARGIN = { top: 14, right: 16, bottom: 44, left: 60 };
+const MARGIN = { top: 14, right: 16, bottom: 50, left: 68 };
 
 /** @throws {RangeError} a curve whose x and y differ in length */
 export function lineChart({ curves, xLabel, yLabel, xDomain, description, width = 640, height = 300 }: LineChart): string {
@@ -44,7 +44,7 @@ export function lineChart({ curves, xLabel, yLabel, xDomain, description, width 
     return `<path class="curve" d="${pathOf(curve, xDomain, x, y)}" fill="none" stroke="var(--tone-${tone}, ${TONES[tone]})" stroke-width="1.8" stroke-linejoin="round"${dash}/>`;
   });
   return [
-    `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 ${width} ${height}" width="${width}" height="${height}" role="img" aria-label="${escapeText(description)}" font-family="system-ui, sans-serif" font-size="13">`,
+    `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 ${width} ${height}" width="${width}" height="${height}" role="img" aria-label="${escapeText(description)}" font-family="system-ui, sans-serif" font-size="15">`,
     axes(x, y, width, height, xLabel, yLabel),
     ...paths,
     legend(curves, width),
@@ -88,7 +88,7 @@ function axes(x: Scale, y: Scale, width: number, height: number, xLabel: string,
   const number = format('~g');
   const xTicks = x.ticks(8).map((value) => {
     const at = x(value).toFixed(2);
-    return `<line x1="${at}" x2="${at}" y1="${bottom}" y2="${bottom + 5}" stroke="${ink}"/><text x="${at}" y="${bottom + 19}" text-anchor="middle" fill="${ink}">${number(value)}</text>`;
+    return `<line x1="${at}" x2="${at}" y1="${bottom}" y2="${bottom + 5}" stroke="${ink}"/><text x="${at}" y="${bottom + 21}" text-anchor="middle" fill="${ink}">${number(value)}</text>`;
   });
   const yTicks = y.ticks(5).map((value) => {
     const at = y(value).toFixed(2);
@@ -100,7 +100,7 @@ function axes(x: Scale, y: Scale, width: number, height: number, xLabel: string,
     ...xTicks,
     `<path d="M${MARGIN.left},${MARGIN.top}V${bottom}H${right}" fill="none" stroke="${ink}"/>`,
     `<text x="${(MARGIN.left + right) / 2}" y="${height - 8}" text-anchor="middle" fill="${ink}">${escapeText(xLabel)}</text>`,
-    `<text transform="translate(16 ${middle}) rotate(-90)" text-anchor="middle" fill="${ink}">${escapeText(yLabel)}</text>`,
+    `<text transform="translate(18 ${middle}) rotate(-90)" text-anchor="middle" fill="${ink}">${escapeText(yLabel)}</text>`,
   ].join('\n');
 }
 
