@@ -26,7 +26,7 @@ export function addPredict(program: Command): void {
     .addOption(new Option('--edge <edge>', 'absorption edge').choices(['K', 'L3', 'L2', 'L1']).default('K'))
     .option('--temperature <K>', 'temperature of the sample, K (default 300)', number)
     .option('--debye-temperature <K>', 'Debye temperature, K (default: one is assumed, with a warning)', number)
-    .addOption(new Option('--thermal <model>', 'thermal disorder').choices(['debye', 'none']).default('debye'))
+    .addOption(new Option('--thermal <model>', 'thermal disorder').choices(['debye', 'einstein', 'springs', 'none']).default('debye'))
     .addOption(
       new Option('--self-energy <kind>', 'self-energy of the photoelectron')
         .choices(['mean', 'hedin-lundqvist', 'dirac-hara'])

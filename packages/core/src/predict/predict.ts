@@ -3,15 +3,16 @@
  * Å, Å⁻¹, Å², eV, K at this door.
  */
 import { BOHR_ANGSTROM, evFromHartree } from '../constants.js';
-import { correlatedDebye, distanceResolution, groupShells, morseThirdCumulant, type ThermalModel } from '../disorder/index.js';
+import { distanceResolution, groupShells, morseThirdCumulant, type ThermalModel } from '../disorder/index.js';
 import { elementBySymbol } from '../elements/index.js';
 import { type Diagnostic, InputError, type Running } from '../errors.js';
 import { OVERLAP_RADIUS } from '../scattering/index.js';
 import { fourierTransform, type PathDisorder, PathSum, uniformKGrid } from '../spectrum/index.js';
 import { findSites } from '../structure/index.js';
 import type { Site, Structure } from '../structure/types.js';
-import { checkOptions, DEFAULTS, settleDebye } from './options.js';
+import { checkOptions, DEFAULTS } from './options.js';
 import { type SiteSignal, type StageClock, siteSignal } from './site-signal.js';
+import { thermalModel } from './thermal.js';
 import type { PredictedPath, PredictedShell, Prediction, PredictOptions } from './types.js';
 
 /** Window of shares and of the transform: sills of 1 Å⁻¹ from 3 Å⁻¹ to the end. */
@@ -64,7 +65,7 @@ export function predict(
     warnings.push(...site.diagnostics, ...siteWarnings(site, options.radius));
     const signal = siteSignal(site, options, clock, context.running);
     signals.push(signal);
-    const thermal = thermalModel(site, options, warnings);
+    const thermal = thermalModel(structure, site, options, warnings);
     for (const contribution of contributionsOf(signal, thermal, options, k)) {
       contributions.push(contribution);
       for (let i = 0; i < k.length; i++) chi[i]! += contribution.chi[i]!;
@@ -128,11 +129,6 @@ export function predict(
     warnings: unique(warnings),
     timing: { atoms: clock.atoms, potentials: clock.potentials, phases: clock.phases, paths: clock.paths, total: now() - started },
   };
-}
-
-function thermalModel(site: Site, options: PredictOptions, warnings: Diagnostic[]): ThermalModel | undefined {
-  if (options.thermal === 'none') return undefined;
-  return correlatedDebye({ ...settleDebye(site, options, warnings), temperature: options.temperature });
 }
 
 function contributionsOf(signal: SiteSignal, thermal: ThermalModel | undefined, options: PredictOptions, k: Float64Array): Contribution[] {
