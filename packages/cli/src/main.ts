@@ -5,6 +5,7 @@ import { addDose } from './dose.js';
 import { addPredict } from './predict.js';
 import { addReduce } from './reduce.js';
 import { addServe } from './serve.js';
+import { addSites } from './sites.js';
 import { VERSION } from './version.js';
 
 const program = new Command('ringtrue')
@@ -16,6 +17,7 @@ const program = new Command('ringtrue')
 addPredict(program);
 addReduce(program);
 addDose(program);
+addSites(program);
 addServe(program);
 
 try {

@@ -105,19 +105,20 @@ export class AtomRows {
     const b = this.optional(get('b_iso_or_equiv'), 'B', line);
     const uIso = u ?? (b === undefined ? undefined : b / (8 * Math.PI ** 2));
     const residue = this.residueOf(get);
-    const draft: Draft = {
+    // Set one by one, not spread together: this runs a million times.
+    const draft: { -readonly [Key in keyof Draft]: Draft[Key] } = {
       name: this.intern(label),
       element: type?.element,
       position,
       occupancy: this.occupancy(get('occupancy'), label, line),
-      ...(uIso === undefined ? {} : { uIso }),
-      ...(su ? { positionSu: su } : {}),
-      ...(alternate === undefined ? {} : { alternate: this.intern(alternate) }),
-      ...(assembly === undefined ? {} : { assembly: this.intern(assembly) }),
-      ...(residue ? { residue } : {}),
-      ...(charge === undefined ? {} : { formalCharge: charge }),
       line,
     };
+    if (uIso !== undefined) draft.uIso = uIso;
+    if (su) draft.positionSu = su;
+    if (alternate !== undefined) draft.alternate = this.intern(alternate);
+    if (assembly !== undefined) draft.assembly = this.intern(assembly);
+    if (residue) draft.residue = residue;
+    if (charge !== undefined) draft.formalCharge = charge;
     const model = get('pdbx_pdb_model_num') ?? '1';
     const list = this.models.get(model);
     if (list) list.push(draft);

@@ -30,5 +30,5 @@ export class Lines {
 /** Byte order mark off; lone carriage returns (old Mac files) become line breaks. */
 export function plainText(text: string): string {
   const body = text.charCodeAt(0) === 0xfeff ? text.slice(1) : text;
-  return /\r(?!\n)/.test(body) ? body.replace(/\r\n?/g, '\n') : body;
+  return body.includes('\r') && /\r(?!\n)/.test(body) ? body.replace(/\r\n?/g, '\n') : body;
 }

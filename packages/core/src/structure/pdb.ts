@@ -14,6 +14,7 @@ import { PdbStatistics } from './pdb-statistics.js';
 import { spaceGroupByName } from './space-groups.js';
 import type { Atom, Cell, Residue, Structure, SymmetryOperator, Vec3 } from './types.js';
 
+const BLANK = 32;
 const PER_B = 1 / (8 * Math.PI ** 2);
 
 /**
@@ -32,8 +33,7 @@ export function readPdb(text: string): Structure {
   reading: while (lines.next()) {
     const { start, end } = lines;
     if (end - start < 3) continue;
-    const record = text.slice(start, Math.min(start + 6, end)).trimEnd();
-    switch (record) {
+    switch (recordOf(text, start, end)) {
       case 'ATOM':
       case 'HETATM': {
         const atom = reader.read(lines);
@@ -80,6 +80,12 @@ export function readPdb(text: string): Structure {
     ...(known ? { statistics: known } : {}),
     diagnostics: [...diagnostics, ...(crystal?.diagnostics ?? [])],
   };
+}
+
+function recordOf(text: string, start: number, end: number): string {
+  if (text.startsWith('ATOM  ', start)) return 'ATOM';
+  if (text.startsWith('HETATM', start)) return 'HETATM';
+  return text.slice(start, Math.min(start + 6, end)).trimEnd();
 }
 
 interface Crystal {
@@ -136,6 +142,7 @@ class AtomReader {
   private readonly text: string;
   private readonly diagnostics: Diagnostic[];
   private readonly interned = new Map<string, string>();
+  private readonly trims = new Map<string, string>();
   private readonly elements = new Map<string, string | undefined>();
   private guessed = 0;
   private shifted = 0;
@@ -153,32 +160,33 @@ class AtomReader {
     const shift = serialEnd > start + 11 ? serialEnd - start - 11 : 0;
     if (shift > 0) this.shifted++;
     const o = start + shift; // columns count from here, column n at o + n − 1
-    const field = (first: number, last: number): string => text.slice(Math.min(o + first - 1, end), Math.min(o + last, end));
     const position: Vec3 = [
       this.coordinate(o, end, 31, 'x', line),
       this.coordinate(o, end, 39, 'y', line),
       this.coordinate(o, end, 47, 'z', line),
     ];
-    const name4 = field(13, 16).padEnd(4);
-    const name = this.intern(name4.trim());
-    const residueName = field(18, 20).trim();
-    const element = this.elementOf(field(77, 78), name4, residueName, line);
+    const name4 = this.intern(text.slice(Math.min(o + 12, end), Math.min(o + 16, end)));
+    const residue = this.residueOf(o, end, line);
+    const element = this.elementOf(o, end, name4, residue.name, line);
     if (element === undefined) return undefined;
-    const alternate = field(17, 17).trim();
-    const residue = this.residueOf(text.slice(Math.min(o + 17, end), Math.min(o + 27, end)), residueName, line);
-    const b = this.number(o, end, 61, 66);
-    const charge = chargeOf(field(79, 80));
-    return {
+    const name = this.trimmed(name4);
+    // Set one by one, not spread together: this runs a million times, and most atoms have the same few fields.
+    const atom: { -readonly [Key in keyof Atom]: Atom[Key] } = {
       name,
       element,
       position,
       occupancy: this.occupancy(o, end, name, line),
-      ...(b === undefined ? {} : { uIso: b * PER_B }),
-      ...(alternate === '' ? {} : { alternate: this.intern(alternate) }),
       residue,
-      ...(charge === undefined ? {} : { formalCharge: charge }),
       line,
     };
+    const b = decimalAt(text, Math.min(o + 60, end), Math.min(o + 66, end));
+    if (Number.isFinite(b)) atom.uIso = b * PER_B;
+    if (o + 16 < end && text.charCodeAt(o + 16) !== BLANK) atom.alternate = this.intern(text.charAt(o + 16));
+    if (o + 78 < end && (text.charCodeAt(o + 78) !== BLANK || text.charCodeAt(o + 79) !== BLANK)) {
+      const charge = chargeOf(text.slice(o + 78, Math.min(o + 80, end)));
+      if (charge !== undefined) atom.formalCharge = charge;
+    }
+    return atom;
   }
 
   summarise(): void {
@@ -220,18 +228,13 @@ class AtomReader {
     return Number(tokens[(first - 31) / 8]) === value;
   }
 
-  private number(o: number, end: number, first: number, last: number): number | undefined {
-    const from = Math.min(o + first - 1, end);
-    const value = decimalAt(this.text, from, Math.min(o + last, end));
-    return Number.isFinite(value) ? value : undefined;
-  }
-
   private occupancy(o: number, end: number, name: string, line: number): number {
     const from = Math.min(o + 54, end);
     const to = Math.min(o + 60, end);
-    if (this.text.slice(from, to).trim() === '') return 1;
     const value = decimalAt(this.text, from, to);
+    if (value === 1) return 1;
     if (Number.isFinite(value)) return clampOccupancy(value, name, line, this.diagnostics);
+    if (this.text.slice(from, to).trim() === '') return 1;
     const found = this.text.slice(from, to);
     throw new ReadError(`line ${line}, columns 55–60: the occupancy should be a number like "  1.00", found "${found}"`, {
       line,
@@ -240,8 +243,8 @@ class AtomReader {
     });
   }
 
-  private elementOf(column: string, name4: string, residue: string, line: number): string | undefined {
-    const written = column.trim();
+  private elementOf(o: number, end: number, name4: string, residue: string, line: number): string | undefined {
+    const written = this.trimmed(this.intern(this.text.slice(Math.min(o + 76, end), Math.min(o + 78, end))));
     if (written !== '') {
       const key = `!${written}`;
       if (!this.elements.has(key)) this.elements.set(key, /^[A-Za-z]+$/.test(written) ? elementSymbol(written) : undefined);
@@ -251,7 +254,7 @@ class AtomReader {
     }
     this.guessed++;
     const key = name4 + residue;
-    if (!this.elements.has(key)) this.elements.set(key, elementOfPdbName(name4, residue));
+    if (!this.elements.has(key)) this.elements.set(key, elementOfPdbName(name4.padEnd(4), residue));
     const element = this.elements.get(key);
     if (element === undefined) this.unknown(name4, 'its name tells no element', line);
     return element;
@@ -265,9 +268,10 @@ class AtomReader {
     });
   }
 
-  /** @param key  columns 18–27: residue name, chain, number, insertion code */
-  private residueOf(key: string, name: string, line: number): Residue {
-    if (this.residue && key === this.residueKey) return this.residue;
+  /** Columns 18–27: residue name, chain, number, insertion code; the same object for all atoms of a residue. */
+  private residueOf(o: number, end: number, line: number): Residue {
+    if (this.residue && this.text.startsWith(this.residueKey, o + 17)) return this.residue;
+    const key = this.text.slice(Math.min(o + 17, end), Math.min(o + 27, end));
     this.residueKey = key;
     const digits = key.slice(5, 9);
     const number = hybrid36(digits);
@@ -279,12 +283,21 @@ class AtomReader {
       });
     }
     this.residue = {
-      name: this.intern(name),
+      name: this.intern(key.slice(0, 3).trim()),
       number: Number.isNaN(number) ? 0 : number,
       insertion: key.slice(9, 10).trim(),
       chain: this.intern(key.slice(4, 5).trim()),
     };
     return this.residue;
+  }
+
+  private trimmed(text: string): string {
+    let short = this.trims.get(text);
+    if (short === undefined) {
+      short = text.trim();
+      this.trims.set(text, short);
+    }
+    return short;
   }
 
   private intern(text: string): string {
@@ -333,24 +346,20 @@ function checkOccupancySums(atoms: readonly Atom[], diagnostics: Diagnostic[]): 
 
 /** The same atom of the same residue written twice in one place. */
 function checkDuplicates(atoms: readonly Atom[], diagnostics: Diagnostic[]): void {
-  let previous: Atom | undefined;
-  const seen = new Map<Residue, Set<string>>();
-  for (const atom of atoms) {
-    const key = `${atom.name}|${atom.alternate ?? ''}|${atom.position.join()}`;
-    let names = seen.get(atom.residue!);
-    if (!names) {
-      if (previous) seen.clear(); // residues stand together; only the present one is remembered
-      names = new Set();
-      seen.set(atom.residue!, names);
-    }
-    if (names.has(key)) {
+  let first = 0; // of the present residue
+  for (let i = 1; i < atoms.length; i++) {
+    const atom = atoms[i]!;
+    if (atom.residue !== atoms[first]!.residue) first = i;
+    // Two hundred back, so that a file that calls all its atoms one residue stays linear; findSites meets any others.
+    for (let j = Math.max(first, i - 200); j < i; j++) {
+      const other = atoms[j]!;
+      if (other.name !== atom.name || other.alternate !== atom.alternate) continue;
+      if (other.position.some((v, axis) => v !== atom.position[axis])) continue;
       diagnostics.push({
         code: 'duplicate-atom',
         message: `line ${atom.line}: ${atom.name} occurs twice at the same place; one is used`,
         line: atom.line!,
       });
     }
-    names.add(key);
-    previous = atom;
   }
 }

@@ -56,10 +56,7 @@ export function checkSite(structure: Structure, site: Site): Diagnostic[] {
     const lopsided = Math.hypot(x!, y!, z!) / Math.max(1, shell.length);
     // A ligand missing from a tetrahedron leaves 1/3, half an octahedron 0.58; three in a plane leave nothing.
     if (shell.length < (linear ? 2 : 3) || (shell.length < 6 && lopsided > 0.45)) {
-      say(
-        'truncated-coordination',
-        `only ${shell.length} bonded neighbours, all to one side or too few; ligands may be missing from the file`,
-      );
+      say('truncated-coordination', `bonded neighbours: ${shell.length}, too few or all to one side; ligands may be missing from the file`);
     }
   }
 

@@ -110,7 +110,9 @@ function sitesOf(
   const group = disorder.groupOf[source]!;
   const isLabelled = group >= 0 && absorber.alternate !== undefined;
   const fixed = isLabelled ? { group, label: disorder.labelOf(source) } : undefined;
-  const { list, dropped } = combinations(disorder, around, variantRadius, fixed, maxVariants);
+  // On the absorber's own spot sits whoever replaces it elsewhere; that one is no choice.
+  const others = around.filter((image) => image !== own && !sharesSpot(image, own, images));
+  const { list, dropped } = combinations(disorder, isLabelled ? [own, ...others] : others, variantRadius, fixed, maxVariants);
   const density = images.density(atoms);
   const isWhole = !images.isCrystal && around.length === atoms.reduce((n, _, i) => n + Number(images.occupancy[i]! > 0), 0);
   const diagnostics = [...shared];
@@ -122,7 +124,7 @@ function sitesOf(
   }
   return list.map((combination) => {
     const said: Diagnostic[] = [];
-    const others = pickAtoms(structure, around, own, combination, disorder, images, said);
+    const neighbours = pickAtoms(structure, others, own, combination, disorder, images, said);
     const self: SiteAtom = {
       ...siteAtom(absorber, own, occupancyOf(source, disorder, images, fixed !== undefined)),
       symmetry: 'x,y,z',
@@ -132,7 +134,7 @@ function sitesOf(
       label: atomLabel(absorber) + (absorber.alternate === undefined ? '' : ` (${absorber.alternate})`),
       element: absorber.element,
       weight: (images.multiplicity[source]! * images.occupancy[source]! * combination.weight) / (1 - dropped),
-      atoms: [self, ...others],
+      atoms: [self, ...neighbours],
       radius: isWhole ? Infinity : radius,
       ...(combination.name ? { variant: combination.name } : {}),
       periodic: images.isCrystal,
@@ -154,19 +156,19 @@ function pickAtoms(
   diagnostics: Diagnostic[],
 ): SiteAtom[] {
   const { atoms } = structure;
-  const isAbsorberPartial = images.occupancy[own.source]! < 1;
   const chosen: SiteAtom[] = [];
   for (const image of around) {
-    if (image === own) continue;
     const group = disorder.groupOf[image.source]!;
     if (group >= 0 && labels.get(group) !== disorder.labelOf(image.source)) continue;
-    // On the absorber's own spot sits whoever replaces it elsewhere.
-    if (isAbsorberPartial && image.distance < 0.8 && images.occupancy[image.source]! + images.occupancy[own.source]! <= 1.05) continue;
     chosen.push(siteAtom(atoms[image.source]!, image, occupancyOf(image.source, disorder, images, group >= 0)));
   }
   const absorber = siteAtom(atoms[own.source]!, own, 1);
   return resolveOverlaps(structure, absorber, sortAtoms(chosen), diagnostics);
 }
+
+/** Whether an image cannot be there together with the partly occupied absorber, being on its spot. */
+const sharesSpot = (image: Image, own: Image, { occupancy }: Images): boolean =>
+  occupancy[own.source]! < 1 && image.distance < 0.8 && occupancy[image.source]! + occupancy[own.source]! <= 1.05;
 
 /** A chosen alternate stands for its whole group: 0.6 of A and 0.4 of B are, in variant A, an atom fully there. */
 function occupancyOf(source: number, { groups, groupOf }: Disorder, images: Images, isChosen: boolean): number {
