@@ -152,3 +152,21 @@ test('images of a third written with four digits merge: twelve neighbours, none 
   expect(site!.atoms.length).toBe(13);
   expect(site!.atoms[1]!.distance).toBeGreaterThan(2.49);
 });
+
+test('a character lost or added in a PDB line never gives another element or place', () => {
+  const line = 'HETATM    4 ZN    ZN A 201      15.647   2.345  -3.125  1.00 20.00          ZN  ';
+  for (let at = 0; at < 54; at++) {
+    for (const spoiled of [line.slice(0, at) + line.slice(at + 1), `${line.slice(0, at)} ${line.slice(at)}`]) {
+      let atoms: ReturnType<typeof read>['atoms'] = [];
+      try {
+        atoms = readStructure(`HEADER\n${spoiled}\n`).atoms;
+      } catch (error) {
+        expect(error).toMatchObject({ name: 'ReadError' });
+      }
+      for (const { element, position } of atoms) {
+        if (at < 30) expect([element, ...position], spoiled).toEqual(['Zn', 15.647, 2.345, -3.125]);
+        else expect(element, spoiled).toBe('Zn');
+      }
+    }
+  }
+});

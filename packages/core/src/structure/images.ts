@@ -3,7 +3,7 @@
  * An atom is on a special position when operations carry it onto itself; its place is then the mean of those images, which lies
  * on the symmetry element whatever digits the file was rounded to (x = 0.3333).
  */
-import type { Diagnostic } from '../errors.js';
+import { type Diagnostic, InputError } from '../errors.js';
 import { type CellGeometry, cellGeometry, transform } from './cell.js';
 import { NeighbourGrid } from './grid.js';
 import { formatOperator } from './operators.js';
@@ -73,7 +73,24 @@ export class Images {
       }
       this.multiplicity[source] = count - start;
     }
+    if (this.isCrystal) this.checkDensity(atoms);
     this.grid = new NeighbourGrid(fractional.subarray(0, 3 * count), this.geometry, this.repeats);
+  }
+
+  /**
+   * A cell written in nm, or in the wrong setting, holds more atoms than any crystal (diamond: 0.18 per Å³) and would be searched
+   * for ever.
+   */
+  private checkDensity(atoms: readonly Atom[]): void {
+    let count = 0;
+    for (let i = 0; i < atoms.length; i++) if (atoms[i]!.element !== 'H') count += this.multiplicity[i]! * this.occupancy[i]!;
+    const { volume, reciprocal } = this.geometry;
+    const thinnest = 1 / Math.max(...reciprocal);
+    if (count / volume > 0.5 || thinnest < SAME_ATOM) {
+      throw new InputError(
+        `the unit cell holds ${count.toFixed(0)} atoms in ${Number(volume.toPrecision(4))} Å³, denser than any crystal; its lengths should be in Å and its symmetry operators those of its setting`,
+      );
+    }
   }
 
   /** Atoms per Å³ without hydrogens, or undefined where nothing repeats in three dimensions. */

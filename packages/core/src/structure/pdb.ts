@@ -225,6 +225,8 @@ class AtomReader {
       .slice(o + 30, Math.min(o + 66, end))
       .trim()
       .split(/\s+/);
+    // A character lost before the coordinates moves the element's first letter out of its columns: ZN would be read as N.
+    if (o + 75 < end && this.text.charCodeAt(o + 75) > BLANK) return false;
     return Number(tokens[(first - 31) / 8]) === value;
   }
 

@@ -156,6 +156,15 @@ describe('crystals', () => {
   });
 });
 
+test('an absorber too near its own symmetry copy is warned of', () => {
+  const [site] = findSites(readStructure(cubic('Fe1 Fe 0.2 0.2 0.2 1\nO1 O 0.5 0.7 0.7 1', "'x,y,z'\n'-x,y,z'")), {
+    absorber: 'Fe',
+    radius: 3,
+  });
+  expect(codes(site!)).toContain('symmetry-copy-close');
+  expect(site!.atoms[1]!.distance).toBeCloseTo(0.4 * 4.2, 12);
+});
+
 describe('what is refused, in one line', () => {
   const two = (d: number) => readStructure(`2\n\nFe 0 0 0\nO ${d} 0 0\n`);
   test.each([
@@ -173,6 +182,14 @@ describe('what is refused, in one line', () => {
     ],
     [() => findSites(two(2), { absorber: 'Fe', radius: 0 }), /radius is 0 Å/],
     [() => findSites(readStructure('1\n\nO 0 0 0'), { radius: 5 }), /no element here has an edge/],
+    [
+      () => findSites(readStructure(cubic('Fe1 Fe 0 0 0 1').replaceAll('4.2', '0.42')), { radius: 5 }),
+      /denser than any crystal; its lengths should be in Å/,
+    ],
+    [
+      () => findSites(readStructure(cubic('Fe1 Fe 0 0 0 1').replace('4.2', '0.0001').replace('4.2', '1e6')), { radius: 5 }),
+      /no volume|denser/,
+    ],
     [() => frameOf(two(2), 1), /no frame 2; the file has 1/],
   ])('case %#', (act, message) => {
     expect(act).toThrow(InputError);

@@ -19,6 +19,9 @@ export interface SiteOptions {
   readonly maxVariants?: number;
 }
 
+/** Half a gigabyte of neighbours. */
+const MOST_CLUSTER_ATOMS = 3e6;
+
 /** Å: two atoms this close cannot both be there. */
 const TOO_CLOSE = 0.5;
 
@@ -37,7 +40,20 @@ export function findSites(structure: Structure, options: SiteOptions): readonly 
   const shared = [...images.diagnostics, ...checkStructure(structure)];
   const sites: Site[] = [];
   for (const sources of chooseAbsorbers(structure, options.absorber)) {
-    const found = sources.flatMap((source) => sitesOf(structure, source, images, disorder, options, shared));
+    const found: Site[] = [];
+    let atoms = 0;
+    for (const source of sources) {
+      for (const site of sitesOf(structure, source, images, disorder, options, shared)) {
+        found.push(site);
+        atoms += site.atoms.length;
+      }
+      if (atoms > MOST_CLUSTER_ATOMS) {
+        throw new InputError(
+          `${sources.length} absorbing ${structure.atoms[source]!.element} atoms with their surroundings to ${radius} Å are more than can be held; ` +
+            `choose one by its label, like "${atomLabel(structure.atoms[source]!)}", or a smaller radius`,
+        );
+      }
+    }
     sites.push(...normalised(images.isCrystal ? mergeEquivalent(found) : found));
   }
   return sites;
