@@ -146,6 +146,17 @@ describe('crystals', () => {
     expect(codes(half!)).toContain('split-position');
   });
 
+  test('sites are weighted by how often the cell holds them and by occupancy', () => {
+    const sites = findSites(readStructure(cubic('Fe1 Fe 0 0 0 1\nFe2 Fe 0.3 0.4 0.5 0.8', "'x,y,z'\n'-x,-y,-z'")), {
+      absorber: 'Fe',
+      radius: 2,
+    });
+    expect(sites.map(({ label, weight }) => [label, weight.toFixed(6)])).toEqual([
+      ['Fe1', (1 / 2.6).toFixed(6)],
+      ['Fe2', (1.6 / 2.6).toFixed(6)],
+    ]);
+  });
+
   test('a slab repeats along two axes only', () => {
     const text = `1\nLattice="3 0 0 0 3 0 0 0 3" pbc="T T F"\nCu 0 0 0\n`;
     const [slab] = findSites(readStructure(text), { absorber: 'Cu', radius: 3.1 });
