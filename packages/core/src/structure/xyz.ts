@@ -195,14 +195,14 @@ export class XyzFrames {
       values.set(key!.toLowerCase(), quoted ?? braced ?? bare ?? '');
     }
     const scale = this.scaleOf(values);
-    const cell = this.latticeOf(values.get('lattice'), scale);
-    const repeats = cell && this.repeatsOf(values.get('pbc'));
+    const repeats = this.repeatsOf(values.get('pbc'));
+    const cell = repeats.includes(true) ? this.latticeOf(values.get('lattice'), scale) : undefined;
     return {
       comment: comment.trim(),
       scale,
       ...this.columnsOf(values.get('properties')),
-      ...(cell && repeats?.includes(true) !== false ? { cell } : {}),
-      ...(cell && repeats?.includes(true) && repeats.includes(false) ? { repeats } : {}),
+      ...(cell ? { cell } : {}),
+      ...(cell && repeats.includes(false) ? { repeats } : {}),
     };
   }
 
@@ -278,6 +278,15 @@ export function readXyz(text: string): Structure {
   frames.push(...reader.end());
   const first = frames[0];
   if (!first) throw new ReadError('the file holds no atoms; an XYZ file starts with the number of atoms');
+  const cellText = ({ cell }: XyzFrame) => cell?.vectors?.join(';');
+  const other = frames.find((frame) => cellText(frame) !== cellText(first));
+  if (other) {
+    reader.diagnostics.push({
+      code: 'cell-changes',
+      message: `line ${other.line}: the cell of this frame differs from the first one's, which is used for all; read frames one by one where that matters`,
+      line: other.line,
+    });
+  }
   return {
     format: 'xyz',
     title: first.comment,
