@@ -2,11 +2,13 @@
  * Einstein model by bond: one oscillator for each bonded pair, σ² = ħ/(2μω) coth(ħω / 2k_BT), μ the reduced mass.
  * Multiple scattering and pairs beyond a bond follow another model, the correlated Debye one as a rule.
  */
+
 import { InputError } from '../errors.js';
+import { isMetal } from '../structure/bonding.js';
 import { BOND_FREQUENCIES, type BondFrequency } from './bond-frequencies.js';
 import { KELVIN_PER_WAVENUMBER, meanSquare } from './oscillator.js';
 import { checkMasses, checkPositive, checkTemperature, routeGradient } from './route.js';
-import { isMetal, springConstantsOf } from './spring-parameters.js';
+import { springConstantsOf } from './spring-parameters.js';
 import type { ThermalModel, ThermalVertex } from './types.js';
 
 export interface EinsteinInput {

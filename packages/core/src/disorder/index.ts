@@ -14,7 +14,7 @@ export { distributionPhase, MORSE_EXPONENT, morseThirdCumulant, thirdCumulantPha
 export type { Shell, ShellPath, ShellSignal } from './shells.js';
 export { distanceResolution, groupShells, hiddenByOneShell } from './shells.js';
 export type { MassOf } from './spring-body.js';
-export { springBodyOfCrystal, springBodyOfSite } from './spring-body.js';
+export { springBodyOf, springBodyOfCrystal, springBodyOfSite } from './spring-body.js';
 export type { SpringForm } from './spring-forms.js';
 export { badger, lindh, orderedUff, plainUff, schlegel } from './spring-forms.js';
 export type { SpringAtom, SpringBody } from './spring-terms.js';

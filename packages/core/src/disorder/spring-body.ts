@@ -21,6 +21,22 @@ interface Candidate {
   readonly occupancy: number;
 }
 
+/** Cells of more atoms than this are not taken whole: their modes cost (6n)³ at every wave vector. */
+const LARGEST_CELL = 48;
+
+/**
+ * What to let vibrate for a site: the whole crystal where its cell is small, else the site's cluster.
+ *
+ * @param site  of this structure; with a large cell its radius should reach some 5 Å beyond the paths wanted
+ * @throws {InputError} see springBodyOfCrystal and springBodyOfSite
+ */
+export function springBodyOf(structure: Structure, site: Site, massOf: MassOf): SpringBody {
+  const isCrystal = structure.cell !== undefined && site.periodic && !structure.repeats?.includes(false);
+  if (!isCrystal || structure.atoms.length > LARGEST_CELL) return springBodyOfSite(site, massOf);
+  const body = springBodyOfCrystal(structure, massOf);
+  return body.atoms.length <= LARGEST_CELL ? body : springBodyOfSite(site, massOf);
+}
+
 /**
  * A site's cluster as a spring body. A molecule that lies wholly inside is free; where the cluster was cut, the atoms
  * within 2.8 Å of the cut are held at the mean stiffness of the inner ones (see springNetwork).

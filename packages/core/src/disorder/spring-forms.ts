@@ -16,7 +16,8 @@
  * min(1, n), for a bend the product of both. No number in it is fitted here; the scores stand in the spring tests.
  */
 
-import { isMetal, springConstantsOf } from './spring-parameters.js';
+import { isMetal } from '../structure/bonding.js';
+import { springConstantsOf } from './spring-parameters.js';
 
 export interface SpringForm {
   readonly name: string;

@@ -102,11 +102,6 @@ const TABLE: Readonly<Record<string, readonly [charge: number, radius: number]>>
   U: [3.9, 1.7],
 };
 
-const NONMETALS = new Set('H He B C N O F Ne Si P S Cl Ar Ge As Se Br Kr Sb Te I Xe At Rn'.split(' '));
-
-/** Metals proper: no directed bonds among themselves. */
-export const isMetal = (element: string): boolean => !NONMETALS.has(element);
-
 /** @throws {InputError} no constants for this element */
 export function springConstantsOf(element: string): readonly [charge: number, radius: number] {
   const found = TABLE[element];

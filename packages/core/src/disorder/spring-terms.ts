@@ -10,11 +10,13 @@
  *           The Nature of the Chemical Bond (1960), ch. 7: radius = covalent + 0.8): curvature of a Lennard-Jones minimum
  *           of depth 0.1 kcal/mol (the middle of the UFF range), its repulsive wall beyond
  */
+
 import { InputError } from '../errors.js';
+import { isMetal } from '../structure/bonding.js';
 import type { Vec3 } from '../structure/types.js';
 import { combine, cross, dot3, type Lattice, reciprocal } from './lattice.js';
 import { bondOrder, isBendable, type SpringForm, TORSION } from './spring-forms.js';
-import { isMetal, springConstantsOf } from './spring-parameters.js';
+import { springConstantsOf } from './spring-parameters.js';
 
 export interface SpringAtom {
   readonly element: string;

@@ -8,7 +8,7 @@ import type { Site, Structure, Vec3 } from '../structure/types.js';
 import { massWeightedHessian, type Pull, rigidMotions } from './normal-modes.js';
 import { occupation } from './oscillator.js';
 import { recursion } from './recursion.js';
-import { springBodyOfCrystal, springBodyOfSite } from './spring-body.js';
+import { springBodyOf, springBodyOfCrystal, springBodyOfSite } from './spring-body.js';
 import { orderedUff } from './spring-forms.js';
 import { type SpringBody, springTerms } from './spring-terms.js';
 import { springNetwork } from './springs.js';
@@ -246,6 +246,14 @@ test('a cluster held at its edge stands in for the crystal near its centre', () 
   expectNear(cut.sigma2(to('S', s1)), want1, { rel: 0.03, label: 'first shell' });
   // Long waves are cut off by the held edge, which costs the farther shells part of their σ².
   expectNear(cut.sigma2(to('Zn', second!)), infinite.sigma2(to('Zn', second!)), { rel: 0.15, label: 'second shell' });
+});
+
+test('a small cell is taken whole, a large one and a molecule by the cluster', () => {
+  expect(springBodyOf(sphalerite, ball(6), massOf).lattice).toBeDefined();
+  const large: Structure = { ...sphalerite, atoms: sphalerite.atoms.flatMap((a) => Array.from({ length: 30 }, () => a)) };
+  expect(springBodyOf(large, ball(6), massOf).edge!.length).toBeGreaterThan(0);
+  const molecule = springBodyOf(sphalerite, { ...ball(6), periodic: false, radius: Infinity }, massOf);
+  expect(molecule.lattice ?? molecule.edge).toBeUndefined();
 });
 
 test('bad input is refused in one line', () => {

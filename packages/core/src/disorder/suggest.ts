@@ -1,6 +1,6 @@
 /** Which thermal model suits a structure, and why in words. */
+import { isMetal } from '../structure/bonding.js';
 import type { Site, Structure } from '../structure/types.js';
-import { isMetal } from './spring-parameters.js';
 
 export interface ThermalSuggestion {
   readonly model: 'debye' | 'springs' | 'ensemble';
