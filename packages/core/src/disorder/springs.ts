@@ -35,7 +35,7 @@ export interface SpringModel extends ThermalModel {
 
 /** A vertex must lie this near a body's atom (or a copy of it), Å; alternate positions of one atom share its motion. */
 const SNAP = 1;
-/** More atoms than this are not diagonalised: (3n)³ against 80 sparse products for each route. */
+/** More atoms than this are not diagonalised: (3n)³ against some 40 sparse products for each route. */
 const DIAGONALISE = 160;
 /** A mode this much slower than the fastest is a free turn of some part (3 cm⁻¹ at most), and left out like the rigid motions. */
 const FREE = 1e-3;
@@ -67,11 +67,16 @@ export function springNetwork(body: SpringBody, { temperature, form = orderedUff
     const g = routeGradient(route);
     return route.map((vertex, a) => ({ ...locate(vertex), g: [g[3 * a]!, g[3 * a + 1]!, g[3 * a + 2]!] }));
   };
+  const met = new WeakMap<readonly ThermalVertex[], [theta: number, squared: number][]>(); // σ² is asked for twice, at T and at 0
   const spectrumOf = (route: readonly ThermalVertex[]): [theta: number, squared: number][] => {
+    const known = met.get(route);
+    if (known) return known;
     const list: [number, number][] = [];
     overlaps(pullsOf(route), (theta, squared) => list.push([theta, squared]));
     const top = highest ?? list.reduce((max, [theta]) => Math.max(max, theta), 0);
-    return list.filter(([theta]) => theta > FREE * top);
+    const moving = list.filter(([theta]) => theta > FREE * top);
+    met.set(route, moving);
+    return moving;
   };
   const at = (route: readonly ThermalVertex[], kelvin: number) =>
     spectrumOf(route).reduce((sum, [theta, squared]) => sum + 0.125 * HBAR2_PER_U_KB * (squared / theta) * occupation(theta, kelvin), 0);
