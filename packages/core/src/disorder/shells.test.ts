@@ -73,6 +73,8 @@ test('one shell hides nothing of a single distance and much of two that beat', (
   const hidden = (paths: ShellPath[]) => hiddenByOneShell(groupShells(paths, 0.17)[0]!, paths, range);
   expect(hidden(slight)).toBeGreaterThan(0);
   expect(hidden(slight)).toBeLessThan(0.02);
+  // ±0.03 Å: cos(2kd) against exp(−2k²d²), 2 % at k = 12; without the static part in the Gaussian it would be 25 %.
+  expect(hidden([path('O', 1.97, 3), path('O', 2.03, 3)])).toBeLessThan(0.03);
   // Halves 0.14 Å apart beat to nothing at k = π/0.28 = 11.2 and come back inverted; a Gaussian cannot.
   expect(hidden(strong)).toBeGreaterThan(0.15);
   // A signal given is used: a phase that cancels the sine leaves nothing to hide.

@@ -5,7 +5,7 @@ import { expectNear } from '../../../../test/support/expect-near.js';
 import { seededRandom } from '../../../../test/support/random.js';
 import { atomAt, crystals, MASS, molecules, routeTo, shellsOf } from '../../../../test/support/spring-bodies.js';
 import type { Site, Structure, Vec3 } from '../structure/types.js';
-import { massWeightedHessian, type Pull, rigidMotions } from './normal-modes.js';
+import { bodyModes, forEachOverlap, massWeightedHessian, type Pull, rigidMotions } from './normal-modes.js';
 import { occupation } from './oscillator.js';
 import { recursion } from './recursion.js';
 import { springBodyOf, springBodyOfCrystal, springBodyOfSite } from './spring-body.js';
@@ -156,6 +156,24 @@ test('the recursion finds what the normal modes find', () => {
   }
 });
 
+test('the recursion goes on for as long as a floppy chain asks', () => {
+  // A zigzag of 60 carbon atoms: its ends feel modes from 1 to 1500 cm⁻¹.
+  const body: SpringBody = { atoms: Array.from({ length: 60 }, (_, n) => atomAt('C', [1.26 * n, n % 2 ? 0.88 : 0, 0.2 * Math.sin(n)])) };
+  const g: Vec3 = [2, 0, 0];
+  const pulls: Pull[] = [
+    { atom: 0, position: body.atoms[0]!.position, g: [-2, 0, 0] },
+    { atom: 30, position: body.atoms[30]!.position, g },
+  ];
+  const { theta, squared } = recursion(body, springTerms(body, orderedUff), rigidMotions(body))(pulls);
+  const set = bodyModes(body, springTerms(body, orderedUff), rigidMotions(body));
+  let wanted = 0;
+  forEachOverlap(set, body, pulls, (t, overlap) => {
+    wanted += overlap / (t * t);
+  });
+  const got = theta.reduce((sum, t, s) => sum + squared[s]! / (t * t), 0);
+  expectNear(got, wanted, { rel: 1e-3, label: '⟨1/ω²⟩' });
+});
+
 test('the projected density adds up to one and lies where the bond vibrates', () => {
   const body = molecules.tetrahedral('Fe', 'S', 2.28);
   const { wavenumber, weight } = springNetwork(body, { temperature: 10 }).projectedDensity(route(body, 0, 1), 20);
@@ -234,6 +252,18 @@ test('a cluster held at its edge stands in for the crystal near its centre', () 
   const infinite = springNetwork(crystal, { temperature: 200 });
   const cluster = springBodyOfSite(ball(9.5), massOf); // 167 atoms: by recursion
   expect(cluster.edge!.length).toBeGreaterThan(60);
+  // Every outer atom is held as stiffly as the mean inner atom of its element, or more.
+  const stiffness = new Float64Array(cluster.atoms.length);
+  for (const { k, atoms, b } of springTerms(cluster, orderedUff))
+    b.forEach((x, m) => {
+      stiffness[atoms[Math.floor(m / 3)]!]! += k * x * x;
+    });
+  for (const i of cluster.edge!) {
+    const inner = cluster.atoms.flatMap((a, j) =>
+      a.element === cluster.atoms[i]!.element && !cluster.edge!.includes(j) ? [stiffness[j]!] : [],
+    );
+    expect(stiffness[i]!).toBeGreaterThan(0.999 * (inner.reduce((x, y) => x + y) / inner.length));
+  }
   const cut = springNetwork(cluster, { temperature: 200 });
   const [first, second] = shellsOf(crystal, 4).map(
     (s) => (s.element === 'S' ? [-s.position[0], -s.position[1], -s.position[2]] : s.position) as Vec3,
