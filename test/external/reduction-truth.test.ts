@@ -118,6 +118,21 @@ test('noise is recovered within 15 %', () => {
   }
 });
 
+test('sigmaChi is the scatter that noise makes, at low and at high k', () => {
+  const quiet = reduced('Fe');
+  const noise = 0.002;
+  const seeds = Array.from({ length: 10 }, (_, s) => 30 + s);
+  const noisy = seeds.map((seed) => reduced('Fe', { noise, seed }, { e0: quiet.e0, backgroundBelow: quiet.background.rLow }));
+  for (const [from, to] of [
+    [60, 140],
+    [200, 270],
+  ] as const) {
+    const scatter = rms(Float64Array.from(noisy.map(({ chi }) => rms(chi.map((x, i) => x - quiet.chi[i]!).slice(from, to)))));
+    const said = rms(Float64Array.from(noisy.map(({ sigmaChi }) => rms(sigmaChi.slice(from, to)))));
+    expectNear(said / scatter, 1, { abs: 0.2, label: `said over found, k ${from * 0.05} to ${to * 0.05}` }); // 15 % wanted of the level, 10 % for its course
+  }
+});
+
 test('moving a range by one point changes chi by less than the noise', () => {
   const noise = 0.001;
   const base = reduced('Fe', { noise });

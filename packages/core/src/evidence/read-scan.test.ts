@@ -39,7 +39,7 @@ test('a broken cell is named with its line, or its row is left out and listed; n
       const line = at + 1;
       try {
         const { table, diagnostics } = readColumns(text);
-        expect(diagnostics.map((d) => d.line)).toEqual([line]);
+        expect(diagnostics.map((d) => [d.code, d.line])).toEqual([['row-dropped', line]]);
         expect(Array.from(table.lines)).not.toContain(line);
         expect(table.columns[0]!.length).toBe(99);
       } catch (error) {
