@@ -1,7 +1,7 @@
 /** `ringtrue reduce`: measured absorption to chi(k) with its noise. */
 import { basename } from 'node:path';
-import { type MeasuredScan, type Reduction, reduce, writeXdi } from '@ringtrue/core';
-import { type Command, Option } from 'commander';
+import { type MeasuredScan, type ReduceOptions, type Reduction, reduce, writeXdi } from '@ringtrue/core';
+import { type Command, InvalidArgumentError, Option } from 'commander';
 import { runCommand } from './command.js';
 import { addEvidenceOptions, type EvidenceFlags, notesOf, number, readScans, reduceOptionsOf } from './evidence-options.js';
 import { writeFolder } from './files.js';
@@ -13,6 +13,25 @@ interface Flags extends EvidenceFlags {
   readonly backgroundBelow?: number;
   readonly kMax?: number;
   readonly normalisation?: 'atomic' | 'constant';
+  readonly selfAbsorption?: NonNullable<ReduceOptions['selfAbsorption']>;
+}
+
+/** "absorber=1,total=3,fluorescence=2,in=45,out=45" */
+function sample(text: string): NonNullable<ReduceOptions['selfAbsorption']> {
+  const given = new Map(text.split(',').map((part) => part.split('=').map((piece) => piece.trim()) as [string, string]));
+  const known = ['absorber', 'total', 'fluorescence', 'in', 'out'];
+  const wrong = [...given].find(([word, value]) => !known.includes(word) || !(Number(value) > 0));
+  if (wrong || !known.slice(0, 3).every((word) => given.has(word))) {
+    throw new InvalidArgumentError(`absorber=1,total=3,fluorescence=2 and perhaps in=45,out=45 are wanted, got "${plain(text)}".`);
+  }
+  const angle = (word: string) => Number(given.get(word) ?? 45);
+  return {
+    absorber: Number(given.get('absorber')),
+    total: Number(given.get('total')),
+    atFluorescence: Number(given.get('fluorescence')),
+    angleIn: angle('in'),
+    angleOut: angle('out'),
+  };
 }
 
 const EXAMPLES = `
@@ -44,6 +63,11 @@ export function addReduce(program: Command): void {
         'constant',
       ]),
     )
+    .option(
+      '--self-absorption <sample>',
+      'correct fluorescence of a thick sample; absorptions above the edge: absorber=1,total=3,fluorescence=2,in=45,out=45',
+      sample,
+    )
     .option('--out <folder>', 'write chi.xdi, absorption.xdi, tables and result.json into a folder')
     .addHelpText('after', EXAMPLES)
     .action((files: string[], flags: Flags) => runCommand(() => run(files, flags)));
@@ -51,12 +75,13 @@ export function addReduce(program: Command): void {
 
 function run(files: readonly string[], flags: Flags): void {
   const scans = readScans(files, flags);
-  const { backgroundBelow, kMax, normalisation } = flags;
+  const { backgroundBelow, kMax, normalisation, selfAbsorption } = flags;
   const reduction = reduce(scans, {
     ...reduceOptionsOf(flags),
     ...(backgroundBelow === undefined ? {} : { backgroundBelow }),
     ...(kMax === undefined ? {} : { kMax }),
     ...(normalisation === undefined ? {} : { normalisation }),
+    ...(selfAbsorption === undefined ? {} : { selfAbsorption }),
   });
   const result = { program: { name: 'ringtrue', version: VERSION }, files: files.map((file) => basename(file)), ...reduction };
   if (flags.out !== undefined) writeFolder(flags.out, filesOf(files, scans, reduction, toJson(result)));

@@ -79,7 +79,7 @@ export function readColumns(text: string): ColumnText {
       dropped.push(`${where}: ${reason}`);
       diagnostics.push({ code: 'row-dropped', message: `the row is left out: ${reason}`, line: i + 1 });
     };
-    if (broken !== undefined && !NO_NUMBER.test(broken)) parseNumber(broken, where, i + 1);
+    if (broken !== undefined && !NO_NUMBER.test(broken)) parseNumber(broken, `${where}, column ${cells.indexOf(broken) + 1}`, i + 1);
     if (cells.length !== count) drop(`${count} numbers like the first row are needed, found ${cells.length}`);
     else if (broken !== undefined) drop(`a finite number is needed, found "${broken}"`);
     else {
