@@ -143,6 +143,8 @@ class AtomReader {
   private readonly diagnostics: Diagnostic[];
   private readonly interned = new Map<string, string>();
   private readonly trims = new Map<string, string>();
+  /** Two character codes of the element columns → symbol, or '' where they are none. */
+  private readonly symbols = new Map<number, string>();
   private readonly elements = new Map<string, string | undefined>();
   private guessed = 0;
   private shifted = 0;
@@ -233,8 +235,8 @@ class AtomReader {
   private occupancy(o: number, end: number, name: string, line: number): number {
     const from = Math.min(o + 54, end);
     const to = Math.min(o + 60, end);
+    if (this.text.startsWith('  1.00', from)) return 1;
     const value = decimalAt(this.text, from, to);
-    if (value === 1) return 1;
     if (Number.isFinite(value)) return clampOccupancy(value, name, line, this.diagnostics);
     if (this.text.slice(from, to).trim() === '') return 1;
     const found = this.text.slice(from, to);
@@ -246,13 +248,19 @@ class AtomReader {
   }
 
   private elementOf(o: number, end: number, name4: string, residue: string, line: number): string | undefined {
-    const written = this.trimmed(this.intern(this.text.slice(Math.min(o + 76, end), Math.min(o + 78, end))));
-    if (written !== '') {
-      const key = `!${written}`;
-      if (!this.elements.has(key)) this.elements.set(key, /^[A-Za-z]+$/.test(written) ? elementSymbol(written) : undefined);
-      const element = this.elements.get(key);
-      if (element === undefined) this.unknown(name4, `"${written}" is no element`, line);
-      return element;
+    const first = o + 76 < end ? this.text.charCodeAt(o + 76) : BLANK;
+    const second = o + 77 < end ? this.text.charCodeAt(o + 77) : BLANK;
+    if (first !== BLANK || second !== BLANK) {
+      const key = (first << 16) | second;
+      let element = this.symbols.get(key);
+      if (element === undefined) {
+        const written = String.fromCharCode(first, second).trim();
+        element = (/^[A-Za-z]+$/.test(written) ? elementSymbol(written) : undefined) ?? '';
+        this.symbols.set(key, element);
+      }
+      if (element !== '') return element;
+      this.unknown(name4, `"${String.fromCharCode(first, second).trim()}" is no element`, line);
+      return undefined;
     }
     this.guessed++;
     const key = name4 + residue;
