@@ -133,6 +133,20 @@ test('sigmaChi is the scatter that noise makes, at low and at high k', () => {
   }
 });
 
+test('the largest useful k is where the shell sinks into the noise', () => {
+  // One shell; between 1 and 5 Å lies 4/31.4 of the noise power, 2 · 0.127 ε² against amplitude²: they meet where A(k) = 0.5 ε, for
+  // ε = 0.03 at A = 0.015, k = 14.6; five times that noise meets A = 0.076 at k = 9.2. ±15 %: some 20 independent values a mean, four seeds
+  const useful = (noise: number) => {
+    const found = [1, 2, 3, 4].map(
+      (seed) => reduced('Fe', { noise, seed, shells: SHELLS.slice(0, 1) }, { backgroundBelow: 0.8 }).noise.kMaxUseful,
+    );
+    return found.reduce((sum, k) => sum + k, 0) / found.length;
+  };
+  expectNear(useful(0.03), 14.6, { rel: 0.15, label: 'at 3 % noise' });
+  expectNear(useful(0.15), 9.2, { rel: 0.15, label: 'at 15 % noise' });
+  expect(useful(0.001)).toBeGreaterThan(15);
+});
+
 test('moving a range by one point changes chi by less than the noise', () => {
   const noise = 0.001;
   const base = reduced('Fe', { noise });

@@ -62,6 +62,8 @@ export function edgeShift(targetEnergy: Float64Array, target: Float64Array, ener
 export interface Merged {
   readonly energyEv: Float64Array;
   readonly mu: Float64Array;
+  /** Points of the first scan left out at its beginning, where another has none. */
+  readonly skipped: number;
   /** Standard error of each point from the scatter between the scans, smoothed over 31 points; absent for one scan (n). */
   readonly standardError?: Float64Array;
   /** eV, subtracted from each scan's energies. */
@@ -83,7 +85,7 @@ interface MergeInput {
  */
 export function mergeScans(scans: readonly MergeInput[], e0: number): Merged {
   const first = scans[0]!;
-  if (scans.length === 1) return { energyEv: first.energyEv, mu: first.mu, shifts: [{ value: 0, sd: 0 }] };
+  if (scans.length === 1) return { energyEv: first.energyEv, mu: first.mu, skipped: 0, shifts: [{ value: 0, sd: 0 }] };
   const channel = scans.every((scan) => scan.reference) ? (scan: MergeInput) => scan.reference! : (scan: MergeInput) => scan.mu;
   const shifts = scans.map((scan, s) =>
     s === 0 ? { value: 0, sd: 0 } : edgeShift(first.energyEv, channel(first), scan.energyEv, channel(scan), e0),
@@ -119,5 +121,5 @@ export function mergeScans(scans: readonly MergeInput[], e0: number): Merged {
     for (let j = Math.max(0, i - 15); j <= Math.min(n - 1, i + 15); j++, count++) sum += variance[j]!;
     return Math.sqrt(sum / count);
   });
-  return { energyEv, mu: mean, standardError, shifts };
+  return { energyEv, mu: mean, skipped: first.energyEv.findIndex((e) => e >= from), standardError, shifts };
 }

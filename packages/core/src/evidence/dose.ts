@@ -109,6 +109,12 @@ export function dose(scans: readonly MeasuredScan[], names: readonly string[], o
         'without a reference channel a drift of the monochromator looks like a drift of the sample, and absolute edge energies mean nothing',
     });
   }
+  if (series.length < 5) {
+    warnings.push({
+      code: 'few-scans',
+      message: `from ${series.length} scans their own scatter is hardly known; each further one sharpens the smallest drift that can be seen`,
+    });
+  }
   const shifts = series.map((scan, s) => {
     const own = edgeShift(energyEv, mean, energyEv, mu[s]!, e0);
     if (!reference) return own;

@@ -110,8 +110,8 @@ export function estimateNoise(
 }
 
 /**
- * Where the oscillations between 1 and 5 Å, as rms over ±1 Å⁻¹, fall below the noise expected in the same stretch of R (4/10 of the power
- * between 15 and 25 Å). Without weight, so that each k is judged on its own.
+ * Where the oscillations between 1 and 5 Å, as rms over ±1.5 Å⁻¹, fall below the noise expected in the same stretch of R (4/10 of the power
+ * between 15 and 25 Å, over ±3 Å⁻¹: some 20 and 40 independent values). One weight of k, so that each k is judged nearly on its own.
  */
 function largestUsefulK(k: Float64Array, chi: Float64Array, passage: number): number {
   const kMax = k.at(-1)!;
@@ -122,14 +122,14 @@ function largestUsefulK(k: Float64Array, chi: Float64Array, passage: number): nu
   };
   const signal = part(SIGNAL_RANGE);
   const noise = part(NOISE_RANGE).map((p) => 0.4 * passage * passage * p);
-  const half = Math.round(1 / K_STEP);
   const offset = Math.round(k[0]! / K_STEP);
-  const mean = (x: Float64Array, i: number) => {
+  const mean = (x: Float64Array, i: number, width: number) => {
+    const half = Math.round(width / K_STEP);
     let sum = 0;
     let n = 0;
     for (let j = Math.max(offset, i - half); j <= Math.min(x.length - 1, i + half); j++, n++) sum += x[j]!;
     return sum / n;
   };
-  for (let i = Math.round(3 / K_STEP); i < signal.length; i++) if (mean(signal, i) < 2 * mean(noise, i)) return i * K_STEP;
+  for (let i = Math.round(3 / K_STEP); i < signal.length; i++) if (mean(signal, i, 1.5) < 2 * mean(noise, i, 3)) return i * K_STEP;
   return kMax;
 }

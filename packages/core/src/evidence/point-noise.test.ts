@@ -30,6 +30,11 @@ test('a glitch is flagged with its line and kept; a clean scan has none', () => 
   expect(hit.flagged.map(({ line, code }) => [line, code])).toEqual([[at + 2, 'glitch']]);
   const [glitch] = hit.flagged;
   expectNear((glitch as { deviation: number }).deviation, 14.3, { rel: 0.4, label: 'deviation' }); // 20/√(1 + Σc²); twice the error of a median of 31
+  // Merged with a scan that begins 7 points later, the line is still the first file's
+  const late = syntheticScan('Fe', { shells: SHELLS, noise: 0.0005, seed: 2 });
+  const shorter = { energyEv: late.energyEv.slice(7), mu: late.mu.slice(7) };
+  const merged = reduce([readScan(asColumns(scan), head), readScan(asColumns(shorter), head)]);
+  expect(merged.flagged.map(({ line }) => line)).toEqual([at + 2]);
   expect(hit.mu[at]).toBeCloseTo(scan.mu[at]!, 10);
   expect(hit.energyEv.length).toBe(clean.energyEv.length);
 });

@@ -76,6 +76,7 @@ export interface Reduction {
   readonly mu: Float64Array;
   readonly preEdge: { readonly range: readonly [number, number]; readonly form: string; readonly curve: Float64Array };
   readonly postEdge: { readonly range: readonly [number, number]; readonly degree: number; readonly curve: Float64Array };
+  /** The background removed; given to `backgroundProjector(k, background)` it treats a prediction alike. */
   readonly background: {
     readonly rLow: number;
     readonly kWeight: number;
@@ -209,7 +210,7 @@ function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptio
     e0 = options.e0;
     choices.push({ what: 'E0', value: e0.toFixed(2), why: 'given' });
   }
-  const { energyEv, mu, standardError, shifts } = mergeScans(scans, e0);
+  const { energyEv, mu, skipped, standardError, shifts } = mergeScans(scans, e0);
   const { pre, post, form, degree, after } = rangesFor({ energyEv }, e0, options, element, edge, choices);
   const settings = { e0, pre, preForm: form, post, postDegree: degree };
   let shape = normalise(energyEv, mu, settings);
@@ -275,7 +276,7 @@ function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptio
   const single = pointNoise(kPoints, raw);
   const sigma = standardError ? standardError.map((s, i) => s / unit[i]!) : single.sigma;
   const { noise, sigmaChi } = noiseOf(k, chi, { map, sigma, repeated: standardError !== undefined });
-  const flagged = findGlitches(single, energyEv, first.lines, (e) => e < e0 - 25 || e > e0 + 40);
+  const flagged = findGlitches(single, energyEv, first.lines.subarray(skipped), (e) => e < e0 - 25 || e > e0 + 40);
   const along = onPoints(smooth, kPoints);
   const curve = energyEv.map((e, i) => (e < e0 ? preEdge[i]! : postEdge[i]! + unit[i]! * along[i]!));
   return {
