@@ -82,8 +82,13 @@ function holdEdge(body: SpringBody, terms: SpringTerm[]): void {
   const stiffness = new Float64Array(body.atoms.length);
   for (const { k, atoms, b } of terms) for (let m = 0; m < b.length; m++) stiffness[atoms[Math.floor(m / 3)]!]! += (k * b[m]! * b[m]!) / 3;
   const edge = new Set(body.edge);
+  // What floats loose inside, a water out of reach of the rest, is held as if it stood at the edge.
+  const piece = piecesOf(body.atoms.length, terms);
+  const tied = new Set(body.edge.map((i) => piece[i]!));
+  for (let i = 0; i < piece.length; i++) if (!tied.has(piece[i]!)) edge.add(i);
   const inner = body.atoms.map((_, i) => i).filter((i) => !edge.has(i));
   const mean = (list: readonly number[]) => list.reduce((sum, i) => sum + stiffness[i]!, 0) / list.length;
+  if (inner.length === 0) inner.push(...edge);
   for (const i of edge) {
     const like = inner.filter((j) => body.atoms[j]!.element === body.atoms[i]!.element);
     const wanted = mean(like.length > 0 ? like : inner);
@@ -96,8 +101,8 @@ function holdEdge(body: SpringBody, terms: SpringTerm[]): void {
   }
 }
 
-/** Whether the springs join all atoms into one piece. */
-export function isOnePiece(count: number, terms: readonly SpringTerm[]): boolean {
+/** Which piece each atom is in, atoms of a piece joined by springs: a label per atom. */
+export function piecesOf(count: number, terms: readonly SpringTerm[]): Int32Array {
   const parent = Int32Array.from({ length: count }, (_, i) => i);
   const root = (i: number): number => {
     let r = i;
@@ -106,7 +111,7 @@ export function isOnePiece(count: number, terms: readonly SpringTerm[]): boolean
     return r;
   };
   for (const { atoms } of terms) for (const a of atoms) parent[root(a)] = root(atoms[0]!);
-  return parent.every((_, i) => root(i) === root(0));
+  return parent.map((_, i) => root(i));
 }
 
 /** Of a pair listed from both ends, one is first. */

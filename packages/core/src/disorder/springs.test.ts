@@ -278,6 +278,18 @@ test('a cluster held at its edge stands in for the crystal near its centre', () 
   expectNear(cut.sigma2(to('Zn', second!)), infinite.sigma2(to('Zn', second!)), { rel: 0.15, label: 'second shell' });
 });
 
+test('a piece out of reach inside a cut cluster is held, in a free molecule refused', () => {
+  const near = molecules.tetrahedral('Fe', 'S', 2.28).atoms;
+  const far = molecules
+    .tetrahedral('Zn', 'O', 1.95)
+    .atoms.map((a) => ({ ...a, position: [a.position[0] + 12, a.position[1], a.position[2]] as Vec3 }));
+  expect(() => springNetwork({ atoms: [...near, ...far] }, { temperature: 100 })).toThrow(/held together by no spring/);
+  const held = springNetwork({ atoms: [...near, ...far], edge: [1, 2] }, { temperature: 100 });
+  const value = held.sigma2(route(held.body, 0, 6));
+  expect(value).toBeGreaterThan(0.001);
+  expect(value).toBeLessThan(0.1);
+});
+
 test('a small cell is taken whole, a large one and a molecule by the cluster', () => {
   expect(springBodyOf(sphalerite, ball(6), massOf).lattice).toBeDefined();
   const large: Structure = { ...sphalerite, atoms: sphalerite.atoms.flatMap((a) => Array.from({ length: 30 }, () => a)) };

@@ -10,7 +10,7 @@ import { HBAR2_PER_U_KB, KELVIN_PER_WAVENUMBER, occupation } from './oscillator.
 import { recursion } from './recursion.js';
 import { checkPositive, checkTemperature, routeGradient } from './route.js';
 import { orderedUff, type SpringForm } from './spring-forms.js';
-import { isOnePiece, type SpringBody, type SpringTerm, springTerms } from './spring-terms.js';
+import { piecesOf, type SpringBody, type SpringTerm, springTerms } from './spring-terms.js';
 import type { ThermalModel, ThermalVertex } from './types.js';
 
 export interface SpringOptions {
@@ -55,7 +55,7 @@ export function springNetwork(body: SpringBody, { temperature, form = orderedUff
   checkPositive('springNetwork', 'mesh length', 'Å', meshLength);
   checkBody(body);
   const terms = springTerms(body, form);
-  if (!isOnePiece(body.atoms.length, terms))
+  if (!body.edge?.length && new Set(piecesOf(body.atoms.length, terms)).size > 1)
     throw new InputError(
       'spring network: parts of the structure are held together by no spring (an atom or molecule too far from all others)',
     );
