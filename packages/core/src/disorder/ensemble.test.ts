@@ -2,7 +2,7 @@ import { expect, test } from 'vitest';
 import { expectNear } from '../../../../test/support/expect-near.js';
 import { seededRandom } from '../../../../test/support/random.js';
 import { molecules } from '../../../../test/support/spring-bodies.js';
-import { cumulantAverage, cumulants, exactAverage, type Frame, halfLengths } from './ensemble.js';
+import { cumulantAverage, cumulants, exactAverage, type Frame, halfLengths, weightedCumulants } from './ensemble.js';
 import { harmonicFrame } from './harmonic-sample.js';
 import { springNetwork } from './springs.js';
 
@@ -54,6 +54,17 @@ test('few values: exact small cases, and what is not defined says so', () => {
   expectNear(cumulants(Float64Array.of(0, 0, 3)).third, 9, { abs: 1e-12 });
   // Values 0, 0, 0, 4: Σd² = 12, Σd⁴ = 84, k₄ = (4 · 5 · 84 − 3 · 3 · 12²)/(3 · 2 · 1).
   expectNear(cumulants(Float64Array.of(0, 0, 0, 4)).fourth, 64, { abs: 1e-11 });
+});
+
+test('two conformations: the cumulants of a coin of unequal sides', () => {
+  const [p, q, d] = [0.7, 0.3, 0.12];
+  const c = weightedCumulants(Float64Array.of(2, 2 + d), Float64Array.of(1.4, 0.6));
+  expectNear(c.mean, 2 + q * d, { abs: 1e-14 });
+  expectNear(c.variance, p * q * d ** 2, { abs: 1e-14 });
+  expectNear(c.third, p * q * (p - q) * d ** 3, { abs: 1e-14 });
+  expectNear(c.fourth, p * q * (1 - 6 * p * q) * d ** 4, { abs: 1e-14 });
+  expect(() => weightedCumulants(Float64Array.of(1, 2), Float64Array.of(1))).toThrow(/wants 2 weights/);
+  expect(() => weightedCumulants(Float64Array.of(1, 2), Float64Array.of(2, -1))).toThrow(/≥ 0/);
 });
 
 // A skewed distribution whose average is known in closed form: r = R + gamma(shape a, scale s); ⟨e^{2ikx}⟩ = (1 − 2iks)^{−a}.

@@ -84,6 +84,23 @@ export function cumulants(values: Float64Array): Cumulants {
   };
 }
 
+/**
+ * Cumulants of a distribution that is known, not sampled: alternate conformations with their occupancies, sites with their
+ * weights. The moments are those of the weights themselves, without the sample's n/(n − 1).
+ *
+ * @param weights  ≥ 0, not all 0; need not add up to 1
+ * @throws {InputError} as many weights as values are wanted, none negative
+ */
+export function weightedCumulants(values: Float64Array, weights: Float64Array): Pick<Cumulants, 'mean' | 'variance' | 'third' | 'fourth'> {
+  const total = weights.reduce((a, b) => a + b, 0);
+  if (weights.length !== values.length || !(total > 0 && total < Infinity) || weights.some((w) => w < 0))
+    throw new InputError(`cumulants: wants ${values.length} weights ≥ 0, not all 0, got ${weights.length} adding up to ${total}`);
+  const average = (f: (value: number) => number) => values.reduce((sum, value, i) => sum + (weights[i]! / total) * f(value), 0);
+  const mean = average((r) => r);
+  const variance = average((r) => (r - mean) ** 2);
+  return { mean, variance, third: average((r) => (r - mean) ** 3), fourth: average((r) => (r - mean) ** 4) - 3 * variance * variance };
+}
+
 /** Damping and phase of a path, e^{2ik(r − ⟨r⟩)} averaged exactly over the values. @param k Å⁻¹ */
 export function exactAverage(values: Float64Array, mean: number, k: number): { readonly damping: number; readonly phase: number } {
   let [re, im] = [0, 0];

@@ -8,7 +8,7 @@ export { DEFAULT_ATOM_DENSITY, DEFAULT_DEBYE_TEMPERATURE, defaultDebyeTemperatur
 export type { EinsteinInput } from './einstein.js';
 export { bondKind, einsteinByBond } from './einstein.js';
 export type { Cumulants, Frame, FrameAtom } from './ensemble.js';
-export { cumulantAverage, cumulants, exactAverage, halfLengths } from './ensemble.js';
+export { cumulantAverage, cumulants, exactAverage, halfLengths, weightedCumulants } from './ensemble.js';
 export { harmonicFrame } from './harmonic-sample.js';
 export { distributionPhase, MORSE_EXPONENT, morseThirdCumulant, thirdCumulantPhase } from './phase-terms.js';
 export type { Shell, ShellPath, ShellSignal } from './shells.js';
