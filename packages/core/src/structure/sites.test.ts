@@ -176,6 +176,15 @@ test('an absorber too near its own symmetry copy is warned of', () => {
   expect(site!.atoms[1]!.distance).toBeCloseTo(0.4 * 4.2, 12);
 });
 
+/** A simple cubic block of n³ iron atoms. */
+function lattice(n: number) {
+  const rows = Array.from(
+    { length: n ** 3 },
+    (_, i) => `Fe ${2.5 * (i % n)} ${2.5 * (Math.floor(i / n) % n)} ${2.5 * Math.floor(i / n / n)}`,
+  );
+  return readStructure(`${n ** 3}\n\n${rows.join('\n')}\n`);
+}
+
 describe('what is refused, in one line', () => {
   const two = (d: number) => readStructure(`2\n\nFe 0 0 0\nO ${d} 0 0\n`);
   test.each([
@@ -201,6 +210,7 @@ describe('what is refused, in one line', () => {
       () => findSites(readStructure(cubic('Fe1 Fe 0 0 0 1').replace('4.2', '0.0001').replace('4.2', '1e6')), { radius: 5 }),
       /no volume|denser/,
     ],
+    [() => findSites(lattice(22), { absorber: 'Fe', radius: 14 }), /^10648 absorbing Fe atoms .* choose one by its label, like "Fe\d+"/],
     [() => frameOf(two(2), 1), /no frame 2; the file has 1/],
   ])('case %#', (act, message) => {
     expect(act).toThrow(InputError);

@@ -42,12 +42,13 @@ export function findSites(structure: Structure, options: SiteOptions): readonly 
   for (const sources of chooseAbsorbers(structure, options.absorber)) {
     const found: Site[] = [];
     let atoms = 0;
-    for (const source of sources) {
+    for (const [done, source] of sources.entries()) {
       for (const site of sitesOf(structure, source, images, disorder, options, shared)) {
         found.push(site);
         atoms += site.atoms.length;
       }
-      if (atoms > MOST_CLUSTER_ATOMS) {
+      // Judged from the first few, so that a hopeless wish is refused at once and not when the memory is full.
+      if (done >= 20 && (atoms / (done + 1)) * sources.length > MOST_CLUSTER_ATOMS) {
         throw new InputError(
           `${sources.length} absorbing ${structure.atoms[source]!.element} atoms with their surroundings to ${radius} Å are more than can be held; ` +
             `choose one by its label, like "${atomLabel(structure.atoms[source]!)}", or a smaller radius`,
