@@ -237,9 +237,9 @@ function bendDirections(u: Vec3, v: Vec3, cosine: number): (readonly [Vec3, Vec3
       [n, n],
     ];
   }
-  const helper: Vec3 = Math.abs(u[0]) < 0.7 ? [1, 0, 0] : [0, 1, 0];
-  const along = helper[0] * u[0] + helper[1] * u[1];
-  const raw: Vec3 = [helper[0] - along * u[0], helper[1] - along * u[1], -along * u[2]];
+  const axis: Vec3 = Math.abs(u[0]) < 0.7 ? [1, 0, 0] : [0, 1, 0];
+  const along = axis[0] * u[0] + axis[1] * u[1];
+  const raw: Vec3 = [axis[0] - along * u[0], axis[1] - along * u[1], -along * u[2]];
   const length = Math.hypot(...raw);
   const s: Vec3 = [raw[0] / length, raw[1] / length, raw[2] / length];
   const n: Vec3 = [u[1] * s[2] - u[2] * s[1], u[2] * s[0] - u[0] * s[2], u[0] * s[1] - u[1] * s[0]];

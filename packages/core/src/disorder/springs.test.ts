@@ -285,6 +285,8 @@ test('a piece out of reach inside a cut cluster is held, in a free molecule refu
     .atoms.map((a) => ({ ...a, position: [a.position[0] + 12, a.position[1], a.position[2]] as Vec3 }));
   expect(() => springNetwork({ atoms: [...near, ...far] }, { temperature: 100 })).toThrow(/held together by no spring/);
   const held = springNetwork({ atoms: [...near, ...far], edge: [1, 2] }, { temperature: 100 });
+  const tied = new Set(springTerms(held.body, orderedUff).flatMap(({ atoms }) => (atoms.length === 1 ? atoms : [])));
+  expect([...tied].sort((a, b) => a - b)).toEqual([1, 2, 5, 6, 7, 8, 9]);
   const value = held.sigma2(route(held.body, 0, 6));
   expect(value).toBeGreaterThan(0.001);
   expect(value).toBeLessThan(0.1);
