@@ -81,7 +81,7 @@ export function normalise(energyEv: Float64Array, mu: Float64Array, { e0, pre, p
     const count = weight.filter((w) => w > 0).length;
     if (!(to > from && count >= needed)) {
       throw new InputError(
-        `${what}: ${count} points between ${from} and ${to} eV of the edge at ${e0.toFixed(1)} eV, ${needed} are needed; state another range`,
+        `${what}: ${count} points between ${from.toFixed(0)} and ${to.toFixed(0)} eV of the edge at ${e0.toFixed(1)} eV, ${needed} are needed; state another range`,
       );
     }
     return weight;

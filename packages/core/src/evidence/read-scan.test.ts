@@ -102,6 +102,7 @@ test('bad points are listed with their lines', () => {
 });
 
 test('what cannot be used is refused with its line', () => {
+  expect(() => readScan(`# energy_eV mu\n${rows(30, (i) => [7 + i / 1000, i])}`)).toThrow(/says eV, but no value reaches 200/);
   expect(() => readScan('# nothing\n\n')).toThrow(/nothing but comments/);
   expect(() => readScan('7000,5\t1,2\n7001,5\t1,3\n')).toThrow(/dot/);
   expect(() => readScan(`${rows(30, (i) => [7000 + i, 1])}\n${rows(30, (i) => [7000 + i, 1])}`)).toThrow(/line 31: .*turns back/);

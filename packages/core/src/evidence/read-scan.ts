@@ -140,6 +140,9 @@ function energyFrom(
     unit = roles.angle ? 'degrees' : unitByMagnitude(x);
     said = `${roles.angle ? 'angles' : 'energies'} taken as ${unit}`;
   }
+  if (unit === 'eV' && options.energyUnit === undefined && unitByMagnitude(x) === 'keV') {
+    throw new ReadError(`readScan: column ${at} says eV, but no value reaches 200; if these are keV, state so`);
+  }
   if (unit === 'eV') return { energyEv: Float64Array.from(x), said };
   if (unit === 'keV') return { energyEv: x.map((e) => 1000 * e), said };
   const d = options.dSpacing ?? fileSpacing;

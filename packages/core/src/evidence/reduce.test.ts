@@ -1,0 +1,63 @@
+import { expect, test } from 'vitest';
+import { asColumns, syntheticScan } from '../../../../test/support/synthetic-scan.js';
+import { readScan } from './read-scan.js';
+import { reduce } from './reduce.js';
+
+const base = syntheticScan('Fe', { shells: [{ n: 6, R: 2.0, sigma2: 0.005 }], noise: 0.001 });
+
+/** The scan with points left out and values changed; e from the edge, eV. */
+function changed(keep: (e: number, i: number) => boolean, value: (y: number, e: number) => number = (y) => y) {
+  const kept = Array.from(base.energyEv.keys()).filter((i) => keep(base.energyEv[i]! - 7112, i));
+  const energyEv = Float64Array.from(kept, (i) => base.energyEv[i]!);
+  return readScan(asColumns({ energyEv, mu: energyEv.map((e, j) => value(base.mu[kept[j]!]!, e - 7112)) }), { element: 'Fe', edge: 'K' });
+}
+const all = () => true;
+
+test.each([
+  ['begins too late', changed((e) => e > -25), /begins 2\d eV before the edge at 711\d\.\d eV; 50 eV are needed/],
+  ['begins above the edge', changed((e) => e > 10), /Fe K edge lies at 7112 eV, the scan runs from 7123/],
+  ['ends too early', changed((e) => e < 80), /reaches k = 4\.\d Å⁻¹.*5 Å⁻¹ are needed/],
+  ['has a gap at the edge', changed((e) => e < -20 || e > 30), /falls into a gap of the scan, 70\d\d\.\d to 71\d\d\.\d eV \(line \d+\)/],
+  ['is constant', changed(all, () => 1), /does not rise/],
+  ['falls', changed(all, (y) => -y), /does not rise/],
+  [
+    'rises more elsewhere',
+    changed(all, (y, e) => y + (e > 400 ? 20 : 0)),
+    /strongest rise is at 75\d\d\.\d eV, but the Fe K edge lies at 7112 eV/,
+  ],
+])('a scan that %s is refused in plain words', (_, scan, message) => {
+  expect(() => reduce([scan])).toThrow(message);
+});
+
+test('units, offsets, slopes and direction of the scan change nothing', () => {
+  const { chi } = reduce([changed(all)]);
+  const same = [changed(all, (y) => 1e9 * y), changed(all, (y) => y - 5), changed(all, (y, e) => y + 0.003 * e)];
+  for (const scan of same) {
+    const other = reduce([scan]).chi;
+    // 1e-4: E0 moves with the slope by some 1e-3 eV
+    for (let i = 50; i < chi.length; i++) expect(Math.abs(other[i]! - chi[i]!)).toBeLessThan(1e-4);
+  }
+});
+
+test('a sparse or short scan says so', () => {
+  const codes = (scan: ReturnType<typeof changed>) => reduce([scan]).warnings.map(({ code }) => code);
+  expect(codes(changed(all))).toEqual([]);
+  expect(codes(changed((e) => e < 300 || e > 400))).toEqual(['sparse-points']);
+  expect(codes(changed((e) => e < 160))).toContain('short-post-edge');
+});
+
+test('ready chi on the grid passes untouched; weights are taken off; kinds do not mix', () => {
+  const text = (weight: number) =>
+    `# k chi\n${Array.from({ length: 241 }, (_, i) => 2 + 0.05 * i)
+      .map((k) => `${k} ${k ** weight * Math.sin(4 * k) * Math.exp(-0.01 * k * k)}`)
+      .join('\n')}`;
+  const ready = reduce([readScan(text(0))]);
+  expect(ready.k[0]).toBeCloseTo(2, 9);
+  for (let i = 0; i < ready.k.length; i++)
+    expect(ready.chi[i]).toBeCloseTo(Math.sin(4 * ready.k[i]!) * Math.exp(-0.01 * ready.k[i]! ** 2), 10);
+  const weighted = reduce([readScan(text(3), { chiWeight: 3 })]);
+  for (let i = 0; i < ready.k.length; i++) expect(weighted.chi[i]).toBeCloseTo(ready.chi[i]!, 10);
+  expect(ready.warnings.map(({ code }) => code)).toContain('ready-chi');
+  expect(() => reduce([readScan(text(0)), changed(all)])).toThrow(/cannot be merged/);
+  expect(() => reduce([])).toThrow(/a scan is needed/);
+});
