@@ -12,10 +12,11 @@ import { type Diagnostic, InputError } from '../errors.js';
 import { kFromEnergyEv, uniformKGrid } from '../spectrum/index.js';
 import { edgeShift, type Shift } from './align.js';
 import { backgroundProjector } from './background.js';
+import { findEdge, rangesFor } from './edge.js';
 import { leastSquares } from './least-squares.js';
-import { applyMap, interpolate, localFit } from './local-fit.js';
+import { AVERAGING, applyMap, interpolate, localFit } from './local-fit.js';
 import { atomicDecay, normalise } from './normalise.js';
-import { type Choice, findEdge, type ReduceOptions, rangesFor } from './reduce.js';
+import type { Choice, ReduceOptions } from './reduction.js';
 import type { AbsorptionScan, MeasuredScan } from './types.js';
 
 export interface DoseReport {
@@ -192,7 +193,7 @@ function amplitudeTrend(energyEv: Float64Array, mu: readonly Float64Array[], e0:
   const kMax = Math.min(10, kPoints.at(-1)!);
   if (kMax < 5) return { values: mu.map(() => 1), trendPerScan: { value: 0, sd: Number.POSITIVE_INFINITY } };
   const k = uniformKGrid(kMax);
-  const map = localFit(kPoints, k, 0.08, 0);
+  const map = localFit(kPoints, k, AVERAGING, 0);
   const project = backgroundProjector(k);
   const decay = atomicDecay(energyEv, e0);
   const chis = mu.map((scan) =>

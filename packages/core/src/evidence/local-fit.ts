@@ -14,6 +14,9 @@ export interface SparseMap {
   readonly weights: Float64Array;
 }
 
+/** Å⁻¹, half width of the averaging onto the k grid: 1.6 grid steps, so that neighbouring points share little noise. */
+export const AVERAGING = 0.08;
+
 /** Distance between neighbours at each point (n). */
 export function localSpacing(x: Float64Array): Float64Array {
   const n = x.length;

@@ -8,7 +8,7 @@
  */
 
 import { backTransform, fourierTransform, K_STEP, type TransformSettings, transformPlan } from '../spectrum/index.js';
-import type { SparseMap } from './local-fit.js';
+import { mapUncertainty, type SparseMap } from './local-fit.js';
 
 const NOISE_RANGE = [15, 25] as const;
 const SIGNAL_RANGE = [1, 5] as const;
@@ -132,4 +132,19 @@ function largestUsefulK(k: Float64Array, chi: Float64Array, passage: number): nu
   };
   for (let i = Math.round(3 / K_STEP); i < signal.length; i++) if (mean(signal, i, 1.5) < 2 * mean(noise, i, 3)) return i * K_STEP;
   return kMax;
+}
+
+/** Noise in the window a comparison would use, and σ of each point scaled so that both speak of the same noise. */
+export function noiseOf(
+  k: Float64Array,
+  chi: Float64Array,
+  origin: { readonly map: SparseMap; readonly sigma: Float64Array; readonly repeated: boolean },
+) {
+  const last = k.at(-1)!;
+  const settings = { kWeight: 2, kMin: Math.min(3, last / 3), kMax: last };
+  const noise = estimateNoise(k, chi, settings, origin);
+  const sigma = mapUncertainty(origin.map, origin.sigma);
+  // How the noise runs along k is the points' to say, how large it is the transform's
+  const level = noise.epsilonRPoints ? noise.epsilonR / noise.epsilonRPoints : 1;
+  return { noise, sigmaChi: sigma.map((s) => s * level) };
 }
