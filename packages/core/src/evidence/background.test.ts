@@ -1,4 +1,5 @@
 import { expect, test } from 'vitest';
+import { backgroundObjective } from '../../../../test/reference/background-objective.js';
 import { expectNear } from '../../../../test/support/expect-near.js';
 import { seededRandom } from '../../../../test/support/random.js';
 import { compareInR, fourierTransform, uniformKGrid } from '../spectrum/index.js';
@@ -29,6 +30,23 @@ test('a smooth course is taken away, a shell is left alone', () => {
   const { rFactor } = compareInR({ ...settings, data: copper, model: project.apply(copper) });
   // Its wings below R_low go with the background: 0.6e-3 measured. That is why a prediction must be projected too
   expect(rFactor).toBeLessThan(2e-3);
+});
+
+test('the background is where the stated objective is least', () => {
+  const random = seededRandom(8);
+  const short = uniformKGrid(12);
+  const chi = short.map((q) => 0.05 * Math.sin(3.9 * q) * Math.exp(-0.01 * q * q) + 0.05 * Math.cos(0.9 * q));
+  const project = backgroundProjector(short);
+  const best = project.background(chi);
+  const least = backgroundObjective(short, chi, best, 1, 2);
+  for (let trial = 0; trial < 4; trial++) {
+    const direction = project.background(short.map(() => random() - 0.5));
+    const size = (0.05 * rms(best)) / rms(direction);
+    for (const sign of [-size, size]) {
+      const other = best.map((b, i) => b + sign * direction[i]!);
+      expect(backgroundObjective(short, chi, other, 1, 2)).toBeGreaterThan(least);
+    }
+  }
 });
 
 test('the transform below R_low is gone', () => {

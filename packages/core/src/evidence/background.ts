@@ -1,7 +1,7 @@
 /**
  * The smooth background under chi(k): a cubic spline in k that carries what transforms below R_low.
  *
- *   minimise  ∫_0^R_low |FT[W kʷ (chi − B c)]|² dR  +  SHRINKAGE · ∫_0^∞ |FT[kʷ B c]|² dR        over c
+ *   minimise  ∫_0^R_low |FT[W kʷ (chi − B c)]|² dR  +  SHRINKAGE · ∫_0^∞ |FT[(k² + k0²)^(w/2) B c]|² dR        over c
  *
  * The first term after Newville, Livins, Yacoby, Rehr & Stern, Phys. Rev. B 47, 14126 (1993). The knots lie at whole multiples of
  * π/(2 R_low), the spacing at which a spline reaches R_low and no further (2 R_low k_max/π + 1 of them); being fixed in k
