@@ -10,7 +10,8 @@
  *
  * The second term holds what the first leaves free, the ends where the window vanishes and courses at the very edge of R_low: a spline of
  * which less than that share of power is seen below R_low is drawn to zero, which is the post-edge curve of the reduction. Without it the
- * ends ring. Its size is our choice: the ringing is gone, and a smooth course is left standing by no more than that share.
+ * ends ring. Its size is our choice: of a smooth course, 1.1 % is left between k = 3 and 1 Å⁻¹ before the end; a tenth of
+ * the size leaves 2.8 % (ringing), ten times 12 %. The last 0.5 Å⁻¹, where the window vanishes, are not to be compared.
  */
 
 import { CholeskyDecomposition, Matrix } from 'ml-matrix';
