@@ -13,66 +13,14 @@ import { siteSignal } from '../../packages/core/src/predict/site-signal.js';
 import { singleScattering } from '../../packages/core/src/scattering/index.js';
 import { compareInR, PathSignal, PathSum } from '../../packages/core/src/spectrum/index.js';
 import { findSites, readStructure } from '../../packages/core/src/structure/index.js';
-import { measuredChi } from '../support/measured.js';
+import { CHROMIA, COPPER, cifOf, measuredChi, SPHALERITE, type Standard, skipped } from '../support/measured.js';
 import { minimise } from '../support/minimise.js';
-
-interface Standard {
-  readonly file: string;
-  readonly absorber: string;
-  readonly cell: readonly number[];
-  readonly group: string;
-  readonly atoms: readonly string[];
-  readonly temperature: number;
-  readonly debye: number;
-  readonly kMax: number;
-  readonly r: readonly [number, number];
-  readonly rLow: number;
-}
-
-const COPPER: Standard = {
-  file: 'cu-foil-10K',
-  absorber: 'Cu',
-  cell: [3.603, 3.603, 3.603, 90, 90, 90],
-  group: 'F m -3 m',
-  atoms: ['Cu1 Cu 0 0 0'],
-  temperature: 10,
-  debye: 315,
-  kMax: 15,
-  r: [1.2, 2.8],
-  rLow: 1,
-};
-const CHROMIA: Standard = {
-  file: 'cr2o3-100K',
-  absorber: 'Cr',
-  cell: [4.9557, 4.9557, 13.586, 90, 90, 120],
-  group: 'R -3 c',
-  atoms: ['Cr1 Cr 0 0 0.3475', 'O1 O 0.3058 0 0.25'],
-  temperature: 100,
-  debye: 600,
-  kMax: 13,
-  r: [1, 2.3],
-  rLow: 0.8,
-};
-const SPHALERITE: Standard = {
-  file: 'zns-295K',
-  absorber: 'Zn',
-  cell: [5.4093, 5.4093, 5.4093, 90, 90, 90],
-  group: 'F -4 3 m',
-  atoms: ['Zn1 Zn 0 0 0', 'S1 S 0.25 0.25 0.25'],
-  temperature: 295,
-  debye: 340,
-  kMax: 13,
-  r: [1.3, 2.6],
-  rLow: 1,
-};
 
 /** R-factor as a function of E0 shift, S0² (none: the best), distance scale and first-shell σ² scale. */
 function comparison(standard: Standard, { k, chi }: { k: Float64Array; chi: Float64Array }) {
-  const names = ['length_a', 'length_b', 'length_c', 'angle_alpha', 'angle_beta', 'angle_gamma'];
-  const cif = `data_x\n${names.map((name, i) => `_cell_${name} ${standard.cell[i]}`).join('\n')}\n_space_group_name_H-M_alt '${standard.group}'\nloop_\n_atom_site_label\n_atom_site_type_symbol\n_atom_site_fract_x\n_atom_site_fract_y\n_atom_site_fract_z\n${standard.atoms.join('\n')}\n`;
-  const site = findSites(readStructure(cif), { absorber: standard.absorber, radius: 13 })[0]!;
+  const site = findSites(readStructure(cifOf(standard)), { absorber: standard.absorber, radius: 13 })[0]!;
   const clock = { now: () => 0, atoms: 0, potentials: 0, phases: 0, paths: 0 };
-  const signal = siteSignal(site, { edge: 'K', selfEnergy: 'mean', radius: 6, kMax: 18 }, clock);
+  const signal = siteSignal(site, { edge: 'K', selfEnergy: 'mean', radius: 6, maxLegs: 2, kMax: 18 }, clock);
   const { table, wave, paths, potential } = signal;
   const debye = correlatedDebye({ debyeTemperature: standard.debye, atomDensity: site.atomDensity!, temperature: standard.temperature });
   const thermal = paths.map(({ vertices, halfLength }) => {
@@ -128,9 +76,6 @@ function judge(standard: Standard, data: { k: Float64Array; chi: Float64Array },
   );
   return { blind: blind.value, alpha };
 }
-
-const skipped = (name: string) =>
-  `${name}: the folder of measured standards is not beside the project (RINGTRUE_MEASURED names it), skipped`;
 
 test('copper at 10 K: blind R-factor within 0.02, distance within 0.006 Å', ({ skip }) => {
   const data = measuredChi(COPPER.file);

@@ -33,7 +33,7 @@ export function addPredict(program: Command): void {
         .default('mean'),
     )
     .option('--radius <angstrom>', 'longest half path length, Å (default 5)', number)
-    .option('--max-legs <n>', 'most legs of a path (default 2)', number)
+    .option('--max-legs <n>', 'most legs of a path, 2 to 5 (default 4)', number)
     .option('--k-max <k>', 'largest wave number, Å⁻¹ (default 15)', number)
     .option('--s02 <value>', 'passive-electron factor S0² (default 0.82)', number)
     .option('--e0 <eV>', "shift of the energy origin, eV, positive when the theory's zero lies above the data's (default 0)", number)
@@ -96,14 +96,12 @@ function filesOf(prediction: Prediction): Map<string, string> {
 }
 
 /** What a reader wants first, in words and three tables. */
-function summary(
-  { structure, options, absorbers, scattering, shells, paths, warnings, k, chi, timing }: Prediction,
-  out: string | undefined,
-): string {
+function summary(prediction: Prediction, out: string | undefined): string {
+  const { structure, options, absorbers, scattering, shells, paths, warnings, k, chi, timing } = prediction;
   const share = (value: number): string => `${(100 * value).toFixed(1)} %`;
   const squared = (value: number): string => value.toFixed(5);
   const weighted = k.map((value, i) => value * value * chi[i]!).filter((_, i) => k[i]! >= 2);
-  const shown = paths.slice(0, 12);
+  const shown = [...paths].sort((a, b) => b.share - a.share).slice(0, 12);
   return [
     `${plain(structure.file)}: ${structure.atoms} atoms, ${structure.format}${structure.title ? `, "${plain(structure.title)}"` : ''}`,
     `${absorbers.length} absorbing ${absorbers.length === 1 ? 'site' : 'sites'}: ${absorbers.map(({ label, weight }) => `${plain(label)} (${share(weight)})`).join(', ')}; ${options.edge} edge, ${options.temperature} K, S0² ${options.s02}`,
@@ -122,10 +120,14 @@ function summary(
     ),
     '',
     textTable(
-      ['path', 'N', 'half length (Å)', 'σ² (Å²)', 'share'],
+      ['strongest paths', 'N', 'half length (Å)', 'σ² (Å²)', 'share'],
       shown.map((p) => [p.label, p.degeneracy.toFixed(1), p.halfLength.toFixed(4), squared(p.sigma2.thermal), share(p.share)]),
     ),
-    ...(paths.length > shown.length ? [`… and ${paths.length - shown.length} more paths (--json or --out lists all)`] : []),
+    ...(paths.length > shown.length
+      ? [
+          `… and ${paths.length - shown.length} more paths (--json or --out lists all); weaker ones left out carry at most ${share(prediction.neglected)} of the signal`,
+        ]
+      : []),
     '',
     `k²χ(k) from 2 to ${k.at(-1)!.toFixed(1)} Å⁻¹`,
     smallPlot(weighted, 70, 10),

@@ -1,3 +1,4 @@
 /** Routes of the photoelectron over a site. Å. */
-export { singleScatteringPaths } from './single.js';
+export { enumeratePaths } from './enumerate.js';
+export { pathLabel } from './label.js';
 export type { Path } from './types.js';

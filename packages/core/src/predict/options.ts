@@ -8,7 +8,7 @@ export const DEFAULTS: Omit<PredictOptions, 'absorber'> = {
   thermal: 'debye',
   selfEnergy: 'mean',
   radius: 5,
-  maxLegs: 2,
+  maxLegs: 4,
   kMax: 15,
   s02: 0.82,
   e0: 0,

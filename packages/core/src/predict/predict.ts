@@ -6,6 +6,7 @@ import { BOHR_ANGSTROM, evFromHartree } from '../constants.js';
 import { distanceResolution, groupShells, morseThirdCumulant, type ThermalModel } from '../disorder/index.js';
 import { elementBySymbol } from '../elements/index.js';
 import { type Diagnostic, InputError, type Running } from '../errors.js';
+import { pathLabel } from '../paths/index.js';
 import { OVERLAP_RADIUS } from '../scattering/index.js';
 import { fourierTransform, type PathDisorder, PathSum, uniformKGrid } from '../spectrum/index.js';
 import { findSites } from '../structure/index.js';
@@ -76,11 +77,6 @@ export function predict(
       `no atom but hydrogen lies within ${options.radius} Å of ${options.absorber}; a larger --radius, or a structure in Å, is wanted`,
     );
   }
-  if (options.maxLegs > 2)
-    warnings.push({
-      code: 'single-scattering-only',
-      message: 'Multiple scattering is not computed yet: only two-leg paths are in this prediction.',
-    });
   const total = contributions.reduce((sum, { area }) => sum + area, 0) || 1;
   const [first] = signals;
   const { table, potential } = first!;
@@ -125,7 +121,7 @@ export function predict(
     paths: contributions.map((contribution) => describePath(contribution, options, k, total)),
     shells: describeShells(contributions, options, total),
     transform: { R: transform.R, real: transform.real, imaginary: transform.imaginary, window },
-    neglected: 0,
+    neglected: Math.max(...signals.map(({ neglected }) => neglected)),
     warnings: unique(warnings),
     timing: { atoms: clock.atoms, potentials: clock.potentials, phases: clock.phases, paths: clock.paths, total: now() - started },
   };
@@ -162,7 +158,7 @@ function describePath(
   const path = site.paths[index]!;
   const atoms = path.vertices.map((vertex) => site.site.atoms[vertex]!.element);
   const known: PredictedPath = {
-    label: [...atoms, atoms[0]!].join('–'),
+    label: pathLabel(site.site, path.vertices),
     legs: path.legs,
     degeneracy: path.degeneracy * weight,
     halfLength: path.halfLength,

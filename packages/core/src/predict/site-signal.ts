@@ -6,21 +6,26 @@ import { freeAtom } from '../atom/index.js';
 import type { Edge } from '../atom/types.js';
 import { hartreeFromEv } from '../constants.js';
 import { coreWidthEv, elementBySymbol } from '../elements/index.js';
-import type { Running } from '../errors.js';
-import { type Path, singleScatteringPaths } from '../paths/index.js';
+import { checkRunning, type Running } from '../errors.js';
+import { enumeratePaths, type Path } from '../paths/index.js';
 import {
   buildMuffinTin,
   exchangeCorrelation,
   type MuffinTin,
+  RehrAlbers,
   type ScatteringTable,
   type SelfEnergyName,
   scattererKinds,
   scatteringGrid,
   scatteringTable,
+  selectPaths,
   singleScattering,
 } from '../scattering/index.js';
 import { InterstitialWave, PathSignal } from '../spectrum/index.js';
 import type { Site } from '../structure/types.js';
+
+/** A multiple-scattering path is kept when N|A| reaches this part of the strongest single-scattering path; 0.1 % changes nothing visible. */
+const PATH_THRESHOLD = 0.01;
 
 export interface SiteSignal {
   readonly site: Site;
@@ -29,6 +34,9 @@ export interface SiteSignal {
   readonly wave: InterstitialWave;
   readonly paths: readonly Path[];
   readonly signals: readonly PathSignal[];
+  /** Bound on the share of the signal left out with weak multiple-scattering paths, and their number. */
+  readonly neglected: number;
+  readonly droppedPaths: number;
 }
 
 export interface SiteSignalOptions {
@@ -36,6 +44,8 @@ export interface SiteSignalOptions {
   readonly selfEnergy: SelfEnergyName;
   /** Longest half path length, Å. */
   readonly radius: number;
+  /** Most legs of a path, 2 … 5. */
+  readonly maxLegs: number;
   /** Å⁻¹ */
   readonly kMax: number;
 }
@@ -56,7 +66,7 @@ export interface StageClock {
  */
 export function siteSignal(
   site: Site,
-  { edge, selfEnergy, radius, kMax }: SiteSignalOptions,
+  { edge, selfEnergy, radius, maxLegs, kMax }: SiteSignalOptions,
   clock: StageClock,
   running?: Running,
 ): SiteSignal {
@@ -80,13 +90,25 @@ export function siteSignal(
   const table = scatteringTable(potential, exchangeCorrelation(selfEnergy, width), edge, scatteringGrid(kMax), running);
   lap('phases');
   const wave = new InterstitialWave(table);
-  const paths = singleScatteringPaths(site, kinds.kindOfAtom, radius);
+  const all = enumeratePaths({ site, kindOfAtom: kinds.kindOfAtom, radius, maxLegs }, running);
+  const { kept: paths, neglected, droppedPaths } = selectPaths(table, site, kinds.kindOfAtom, all, PATH_THRESHOLD);
+  const multiple = new RehrAlbers(table);
   const re = new Float64Array(table.k.length);
   const im = new Float64Array(table.k.length);
-  const signals = paths.map((path) => {
-    singleScattering(table, kinds.kindOfAtom[path.vertices[1]!]!, path.halfLength, re, im);
+  const signals = paths.map((path, i) => {
+    checkRunning(running);
+    running?.onProgress?.('path amplitudes', i / paths.length);
+    const spheres = path.vertices.map((vertex) => kinds.kindOfAtom[vertex]!);
+    if (path.legs === 2) singleScattering(table, spheres[1]!, path.halfLength, re, im);
+    else
+      multiple.amplitude(
+        path.vertices.map((vertex) => site.atoms[vertex]!.position),
+        spheres,
+        re,
+        im,
+      );
     return new PathSignal(path, table, wave, re, im);
   });
   lap('paths');
-  return { site, potential, table, wave, paths, signals };
+  return { site, potential, table, wave, paths, signals, neglected, droppedPaths };
 }
