@@ -78,7 +78,7 @@ test('markup in a file is shown as text', async () => {
 test('a file that is no structure, and an absorber that is not there, are told plainly', async () => {
   await page.setInputFiles('input[type=file]', { name: 'letter.txt', mimeType: 'text/plain', buffer: Buffer.from('Dear colleague,\n') });
   await page.getByRole('button', { name: 'Predict' }).click();
-  await expect.poll(() => page.getByRole('alert').textContent()).toContain('letter.txt: line 1: the file is neither XYZ');
+  await expect.poll(() => page.getByRole('alert').textContent()).toContain('letter.txt: the file is neither XYZ');
   await page.getByRole('button', { name: 'Show the invented example' }).click();
   await page.getByRole('heading', { name: 'tideglass.cif' }).waitFor();
   await page.getByLabel('Absorber').fill('Fe');

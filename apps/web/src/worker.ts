@@ -1,5 +1,5 @@
 /** All computing happens here, off the page's thread. Faults travel as their message: an Error loses its class on the way. */
-import { type Prediction, type PredictOptions, predict, ReadError, readStructure } from '@ringtrue/core';
+import { type Prediction, type PredictOptions, predict, readStructure } from '@ringtrue/core';
 import { expose } from 'comlink';
 
 export type Outcome = { readonly prediction: Prediction } | { readonly fault: string };
@@ -10,8 +10,7 @@ const api = {
       const structure = readStructure(text, { fileName: file });
       return { prediction: predict(structure, options, { file, version: '0.1.0', now: () => performance.now() / 1000 }) };
     } catch (error) {
-      const line = error instanceof ReadError && error.place.line !== undefined ? `line ${error.place.line}: ` : '';
-      return { fault: `${file}: ${line}${error instanceof Error ? error.message : String(error)}` };
+      return { fault: `${file}: ${error instanceof Error ? error.message : String(error)}` };
     }
   },
 };

@@ -76,10 +76,7 @@ function compute(file: string, options: Omit<Flags, 'json' | 'out'>): Prediction
     const structure = readStructure(text, { fileName: file });
     return predict(structure, options, { file: basename(file), version: VERSION, now: () => performance.now() / 1000 });
   } catch (error) {
-    if (error instanceof ReadError) {
-      const { line } = error.place;
-      throw new UsageError(`${file}${line === undefined ? '' : `, line ${line}`}: ${error.message}`);
-    }
+    if (error instanceof ReadError) throw new UsageError(`${file}: ${error.message}`);
     if (error instanceof InputError) throw new UsageError(`${file}: ${error.message}`);
     throw error;
   }

@@ -8,8 +8,8 @@ import { checkRunning, InputError, type Running } from '../errors.js';
 import type { Site } from '../structure/types.js';
 import type { Path } from './types.js';
 
-/** Distances within this of each other, Å, are alike: a hundredth of a radian at k = 10 Å⁻¹. */
-const TOLERANCE = 5e-4;
+/** Distances within this of each other, Å, are alike: 0.004 rad at k = 10 Å⁻¹. */
+const TOLERANCE = 2e-4;
 
 /** More groups than this are refused, so that memory stays bounded (about 300 bytes each). */
 const MOST_GROUPS = 2_000_000;
@@ -26,8 +26,11 @@ export interface EnumerationInput {
 
 /** A group while it is being counted. */
 interface Group {
-  readonly vertices: number[];
-  readonly halfLength: number;
+  /** The member that stands for all: the one of the smallest size, whatever the order of the atoms. */
+  vertices: number[];
+  halfLength: number;
+  /** Sum of all distances between its vertices, Å. */
+  size: number;
   degeneracy: number;
   readonly members: number[][];
 }
@@ -59,12 +62,20 @@ export function enumeratePaths({ site, kindOfAtom, radius, maxLegs }: Enumeratio
     if (group) {
       group.degeneracy += share;
       group.members.push(members);
+      const size = sizeOf(route, distances, n);
+      if (size < group.size) Object.assign(group, { vertices: members, halfLength: length / 2, size });
       return;
     }
     if (groups.size >= MOST_GROUPS) {
       throw new InputError(`more than ${MOST_GROUPS} different paths lie within ${radius} Å: use a smaller radius or fewer legs`);
     }
-    groups.set(key, { vertices: members, halfLength: length / 2, degeneracy: share, members: [members] });
+    groups.set(key, {
+      vertices: members,
+      halfLength: length / 2,
+      size: sizeOf(route, distances, n),
+      degeneracy: share,
+      members: [members],
+    });
   };
 
   const extend = (length: number): void => {
@@ -86,7 +97,7 @@ export function enumeratePaths({ site, kindOfAtom, radius, maxLegs }: Enumeratio
   extend(0);
 
   return [...groups.values()]
-    .map((group) => ({ ...group, legs: group.vertices.length }))
+    .map(({ vertices, halfLength, degeneracy, members }) => ({ vertices, halfLength, degeneracy, members, legs: vertices.length }))
     .sort((a, b) => a.halfLength - b.halfLength || a.legs - b.legs || compare(a.vertices, b.vertices));
 }
 
@@ -131,6 +142,12 @@ function distanceClasses(distances: Float64Array, longest: number): Int32Array {
     classes[i] = number;
   }
   return classes;
+}
+
+function sizeOf(route: readonly number[], distances: Float64Array, n: number): number {
+  let size = 0;
+  for (let i = 0; i < route.length; i++) for (let j = 0; j < i; j++) size += distances[route[i]! * n + route[j]!]!;
+  return size;
 }
 
 /** Kinds of the vertices and classes of all distances between them, read in the direction that comes first. */

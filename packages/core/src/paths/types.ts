@@ -8,6 +8,6 @@ export interface Path {
   readonly halfLength: number;
   /** Number of symmetry-equal and time-reversed routes this one stands for; those over partly occupied atoms count in part. */
   readonly degeneracy: number;
-  /** Every route of the group, each as vertices; members[0] equals `vertices`. */
+  /** Every route of the group, each as vertices, `vertices` among them; one direction of each. */
   readonly members: readonly (readonly number[])[];
 }

@@ -4,8 +4,7 @@ import {
   DEFAULT_ATOM_DENSITY,
   defaultDebyeTemperature,
   einsteinByBond,
-  springBodyOfCrystal,
-  springBodyOfSite,
+  springBodyOf,
   springNetwork,
   suggestThermalModel,
   type ThermalModel,
@@ -14,9 +13,6 @@ import { elementBySymbol } from '../elements/index.js';
 import type { Diagnostic } from '../errors.js';
 import type { Site, Structure } from '../structure/types.js';
 import type { PredictOptions } from './types.js';
-
-/** Crystals with more atoms in the cell vibrate as a cluster cut around the absorber: the modes of the cell cost its atoms cubed. */
-const LARGEST_CELL = 60;
 
 /**
  * @param warnings  added to: inputs assumed, a model that suits the structure better
@@ -33,18 +29,12 @@ export function thermalModel(structure: Structure, site: Site, options: PredictO
       message: `${suggestion.reason} --thermal springs would suit ${site.label} better than the Debye model used.`,
     });
   }
-  if (thermal === 'springs') return springNetwork(springBody(structure, site), { temperature });
+  if (thermal === 'springs') return springNetwork(springBodyOf(structure, site, massOf), { temperature });
   const debye = correlatedDebye({ ...debyeInput(site, options, warnings), temperature });
   return thermal === 'einstein' ? einsteinByBond({ temperature, beyond: debye }) : debye;
 }
 
 const massOf = (element: string): number => elementBySymbol(element).mass;
-
-function springBody(structure: Structure, site: Site) {
-  const inCell = structure.atoms.length * structure.operators.length;
-  const repeats = site.periodic && !structure.repeats?.includes(false);
-  return repeats && inCell <= LARGEST_CELL ? springBodyOfCrystal(structure, massOf) : springBodyOfSite(site, massOf);
-}
 
 function debyeInput(site: Site, options: PredictOptions, warnings: Diagnostic[]): { debyeTemperature: number; atomDensity: number } {
   let { debyeTemperature } = options;

@@ -55,9 +55,9 @@ interface Matrices {
   readonly im: Float64Array;
 }
 
-/** Distances and angles this alike share their matrices: 1e-5 Å and 1e-6 in the cosine move a phase by less than 1e-3. */
-const DISTANCE_GRAIN = 1e-5;
-const COSINE_GRAIN = 1e-6;
+/** Distances (Å) and cosines this alike share their matrices; equal by symmetry, they differ by 1e-12. The phase moves by 1e-7. */
+const DISTANCE_GRAIN = 1e-8;
+const COSINE_GRAIN = 1e-9;
 
 /** Amplitudes of multiple-scattering paths of one site. */
 export class RehrAlbers {
