@@ -62,11 +62,11 @@ export class Antiderivative {
  * @param r    radii about the own centre, bohr (n), ascending
  * @param out  (n), added to in place
  *
- * For r ≪ R the difference of antiderivatives cancels; below r = R/200 the average differs from its value at r = R/200
+ * For r ≪ R the difference of antiderivatives cancels; below r = R/1000 the average differs from its value there
  * by (r/R)² of the function's curvature, and that value is used.
  */
 export function addOverlap(G: Antiderivative, R: number, count: number, r: Float64Array, out: Float64Array): void {
-  const rSmall = R / 200;
+  const rSmall = R / 1000;
   const small = (G.at(R + rSmall) - G.at(R - rSmall)) / (2 * R * rSmall);
   for (let i = 0; i < r.length; i++) {
     const ri = r[i]!;
