@@ -24,8 +24,11 @@ import {
 import { InterstitialWave, PathSignal } from '../spectrum/index.js';
 import type { Site } from '../structure/types.js';
 
-/** A multiple-scattering path is kept when N|A| reaches this part of the strongest single-scattering path; 0.1 % changes nothing visible. */
-const PATH_THRESHOLD = 0.01;
+/**
+ * A multiple-scattering path is kept when N|A| reaches this part of the strongest single-scattering path. For a molecule of 60
+ * atoms without symmetry, against 0.001: 0.01 changes k²χ by 3 % rms, 0.005 by 2 %, 0.003 by 0.4 %.
+ */
+const PATH_THRESHOLD = 0.003;
 
 export interface SiteSignal {
   readonly site: Site;
