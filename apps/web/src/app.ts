@@ -20,6 +20,7 @@ export class App extends LitElement {
   @state() private candidate: Candidate | undefined;
   @state() private absorber = 'Mn';
   @state() private edge: 'K' | 'L3' | 'L2' | 'L1' = 'K';
+  @state() private thermal: 'debye' | 'springs' = 'debye';
   @state() private temperature = 15;
   @state() private debyeTemperature = 500;
   @state() private radius = 5;
@@ -129,6 +130,17 @@ export class App extends LitElement {
           </select>
           <span class="unit"></span>
         </label>
+        <label>
+          <span>Thermal model</span>
+          <select
+            @change=${(event: Event) => {
+              this.thermal = (event.target as HTMLSelectElement).value as typeof this.thermal;
+            }}
+          >
+            ${(['debye', 'springs'] as const).map((model) => html`<option value=${model} ?selected=${model === this.thermal}>${model === 'debye' ? 'Debye' : 'springs'}</option>`)}
+          </select>
+          <span class="unit"></span>
+        </label>
         ${numeric('Temperature', 'K', this.temperature, 0, 3000, (value) => {
           this.temperature = value;
         })}
@@ -166,7 +178,10 @@ export class App extends LitElement {
         ${absorbers.length === 1 ? 'site' : 'sites'} of ${prediction.options.absorber} · computed in ${timing.total.toFixed(2)} s
       </p>
       <div class="figures">
-        <figure>${unsafeSVG(chiInK(prediction))}</figure>
+        <figure>
+          ${unsafeSVG(chiInK(prediction))}
+          <figcaption>Line: the prediction. Bands: 68 % and 95 % of what it may be, before any data are seen.</figcaption>
+        </figure>
         <figure>${unsafeSVG(chiInR(prediction))}</figure>
       </div>
       <div class="scroll" tabindex="0" role="region" aria-label="Shells">
@@ -228,13 +243,15 @@ export class App extends LitElement {
     this.running = true;
     this.fault = undefined;
     this.prediction = undefined;
-    const { absorber, edge, temperature, debyeTemperature, radius } = this;
+    const { absorber, edge, thermal, temperature, debyeTemperature, radius } = this;
     const outcome = await this.computing.predict(this.candidate.file, this.candidate.text, {
       absorber,
       edge,
+      thermal,
       temperature,
       debyeTemperature,
       radius,
+      bands: true,
     });
     if (!outcome) return;
     this.running = false;
@@ -268,6 +285,10 @@ export class App extends LitElement {
     :is(button, input, select, .scroll):focus-visible { outline: 2px solid var(--accent); outline-offset: 2px; }
     .figures { display: grid; grid-template-columns: repeat(auto-fit, minmax(24rem, 1fr)); gap: 1rem; margin: 0.75rem 0; }
     figure { margin: 0; padding: 0.5rem; background: var(--panel); border: 1px solid var(--rule); border-radius: 6px; }
+    figcaption {
+      color: var(--quiet);
+      font-size: 0.85rem;
+    }
     svg { display: block; width: 100%; height: auto; }
     .scroll { overflow-x: auto; }
     table { border-collapse: collapse; width: 100%; font-variant-numeric: tabular-nums; }

@@ -59,7 +59,7 @@ function number(text: string): number {
 }
 
 function run(file: string, { json, out, ...options }: Flags): void {
-  const prediction = compute(file, options);
+  const prediction = compute(file, { ...options, bands: json === true || out !== undefined });
   if (out !== undefined) writeFolder(out, filesOf(prediction));
   if (json) {
     process.stdout.write(`${toJson(prediction)}\n`);

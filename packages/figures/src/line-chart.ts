@@ -16,8 +16,20 @@ export interface ChartCurve {
   readonly dashed?: boolean;
 }
 
+/** The area between two curves. */
+export interface ChartRibbon {
+  readonly x: ArrayLike<number>;
+  readonly low: ArrayLike<number>;
+  readonly high: ArrayLike<number>;
+  readonly tone: number;
+  /** 0 … 1 */
+  readonly opacity: number;
+}
+
 export interface LineChart {
   readonly curves: readonly ChartCurve[];
+  /** Drawn below the curves. */
+  readonly ribbons?: readonly ChartRibbon[];
   /** What and in which unit, e.g. "k (Å⁻¹)". */
   readonly xLabel: string;
   readonly yLabel: string;
@@ -33,10 +45,14 @@ const TONES = ['#1f5fa8', '#c4571a', '#2f8f6b', '#8a5bb0', '#a08a1c', '#6b7480']
 const MARGIN = { top: 14, right: 16, bottom: 50, left: 68 };
 
 /** @throws {RangeError} a curve whose x and y differ in length */
-export function lineChart({ curves, xLabel, yLabel, xDomain, description, width = 640, height = 300 }: LineChart): string {
+export function lineChart({ curves, ribbons = [], xLabel, yLabel, xDomain, description, width = 640, height = 300 }: LineChart): string {
   for (const { x, y } of curves) if (x.length !== y.length) throw new RangeError(`lineChart: ${x.length} x but ${y.length} y values`);
   const x = scaleLinear([...xDomain], [MARGIN.left, width - MARGIN.right]);
-  const [low, high] = extent(curves, xDomain);
+  const edges = ribbons.flatMap(({ x: at, low: lower, high: upper }) => [
+    { x: at, y: lower },
+    { x: at, y: upper },
+  ]);
+  const [low, high] = extent([...curves, ...edges], xDomain);
   const y = scaleLinear([low, high], [height - MARGIN.bottom, MARGIN.top]).nice(6);
   const paths = curves.map((curve) => {
     const dash = curve.dashed ? ' stroke-dasharray="5 4"' : '';
@@ -46,6 +62,7 @@ export function lineChart({ curves, xLabel, yLabel, xDomain, description, width 
   return [
     `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 ${width} ${height}" width="${width}" height="${height}" role="img" aria-label="${escapeText(description)}" font-family="system-ui, sans-serif" font-size="15">`,
     axes(x, y, width, height, xLabel, yLabel),
+    ...ribbons.map((ribbon) => ribbonOf(ribbon, xDomain, x, y)),
     ...paths,
     legend(curves, width),
     '</svg>',
@@ -54,7 +71,7 @@ export function lineChart({ curves, xLabel, yLabel, xDomain, description, width 
 
 type Scale = ReturnType<typeof scaleLinear<number, number>>;
 
-function extent(curves: readonly ChartCurve[], [from, to]: readonly [number, number]): [number, number] {
+function extent(curves: readonly Pick<ChartCurve, 'x' | 'y'>[], [from, to]: readonly [number, number]): [number, number] {
   let low = Number.POSITIVE_INFINITY;
   let high = Number.NEGATIVE_INFINITY;
   for (const { x, y } of curves) {
@@ -69,7 +86,7 @@ function extent(curves: readonly ChartCurve[], [from, to]: readonly [number, num
   return [low >= 0 ? 0 : low - space, high + space];
 }
 
-function pathOf({ x: xs, y: ys }: ChartCurve, [from, to]: readonly [number, number], x: Scale, y: Scale): string {
+function pathOf({ x: xs, y: ys }: Pick<ChartCurve, 'x' | 'y'>, [from, to]: readonly [number, number], x: Scale, y: Scale): string {
   let path = '';
   let pen = 'M';
   for (let i = 0; i < xs.length; i++) {
@@ -78,6 +95,13 @@ function pathOf({ x: xs, y: ys }: ChartCurve, [from, to]: readonly [number, numb
     pen = inside ? 'L' : 'M';
   }
   return path;
+}
+
+function ribbonOf({ x: xs, low, high, tone, opacity }: ChartRibbon, domain: readonly [number, number], x: Scale, y: Scale): string {
+  const back = Array.from(xs).reverse();
+  const forth = pathOf({ x: xs, y: high }, domain, x, y);
+  const homeward = pathOf({ x: back, y: Array.from(low).reverse() }, domain, x, y).replace('M', 'L');
+  return `<path class="ribbon" d="${forth}${homeward}Z" fill="var(--tone-${tone % TONES.length}, ${TONES[tone % TONES.length]})" fill-opacity="${opacity}"/>`;
 }
 
 function axes(x: Scale, y: Scale, width: number, height: number, xLabel: string, yLabel: string): string {

@@ -4,12 +4,25 @@ import { lineChart } from './line-chart.js';
 
 const SUPERSCRIPT = ['', '', '²', '³'];
 
-/** kⁿχ(k) from 2 Å⁻¹ on. @param kWeight n, 1 … 3 */
-export function chiInK({ k, chi, structure }: Prediction, kWeight = 3): string {
+/** kⁿχ(k) from 2 Å⁻¹ on, over its 95 % and 68 % bands where they were computed. @param kWeight n, 1 … 3 */
+export function chiInK({ k, chi, structure, bands }: Prediction, kWeight = 3): string {
   const weighted = k.map((value, i) => value ** kWeight * chi[i]!);
   const power = SUPERSCRIPT[kWeight] ?? '';
+  const band = (low: 'low95' | 'low68', high: 'high95' | 'high68', opacity: number) =>
+    bands
+      ? [
+          {
+            x: bands.k,
+            low: bands.k.map((x, i) => x ** kWeight * bands[low][i]!),
+            high: bands.k.map((x, i) => x ** kWeight * bands[high][i]!),
+            tone: 0,
+            opacity,
+          },
+        ]
+      : [];
   return lineChart({
     curves: [{ x: k, y: weighted, tone: 0 }],
+    ribbons: [...band('low95', 'high95', 0.14), ...band('low68', 'high68', 0.2)],
     xDomain: [2, k.at(-1)!],
     xLabel: 'k (Å⁻¹)',
     yLabel: `k${power}χ(k) (Å${['', '⁻¹', '⁻²', '⁻³'][kWeight] ?? ''})`,

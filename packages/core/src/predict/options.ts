@@ -13,6 +13,7 @@ export const DEFAULTS: Omit<PredictOptions, 'absorber'> = {
   s02: 0.82,
   e0: 0,
   pathSignals: false,
+  bands: false,
 };
 
 const LIMITS: readonly (readonly [name: keyof PredictOptions, what: string, unit: string, low: number, high: number])[] = [

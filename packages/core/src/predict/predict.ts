@@ -9,8 +9,9 @@ import { type Diagnostic, InputError, type Running } from '../errors.js';
 import { pathLabel } from '../paths/index.js';
 import { OVERLAP_RADIUS } from '../scattering/index.js';
 import { fourierTransform, type PathDisorder, PathSum, uniformKGrid } from '../spectrum/index.js';
-import { findSites } from '../structure/index.js';
+import { coordinatePrecision, findSites } from '../structure/index.js';
 import type { Site, Structure } from '../structure/types.js';
+import { type BandSite, priorBands } from './bands.js';
 import { checkOptions, DEFAULTS } from './options.js';
 import { type SiteSignal, type StageClock, siteSignal } from './site-signal.js';
 import { thermalModel } from './thermal.js';
@@ -38,6 +39,7 @@ interface Contribution {
   readonly weight: number;
   readonly element: string;
   readonly disorder: PathDisorder;
+  readonly isNearest: boolean;
   readonly chi: Float64Array;
   readonly area: number;
 }
@@ -61,13 +63,16 @@ export function predict(
   const warnings: Diagnostic[] = [...structure.diagnostics];
   const chi = new Float64Array(k.length);
   const contributions: Contribution[] = [];
+  const bandSites: BandSite[] = [];
   const signals: SiteSignal[] = [];
   for (const site of sites) {
     warnings.push(...site.diagnostics, ...siteWarnings(site, options.radius));
     const signal = siteSignal(site, options, clock, context.running);
     signals.push(signal);
     const thermal = thermalModel(structure, site, options, warnings);
-    for (const contribution of contributionsOf(signal, thermal, options, k)) {
+    const own = contributionsOf(signal, thermal, options, k);
+    bandSites.push({ signal, disorder: own.map(({ disorder }) => disorder), isNearest: own.map(({ isNearest }) => isNearest) });
+    for (const contribution of own) {
       contributions.push(contribution);
       for (let i = 0; i < k.length; i++) chi[i]! += contribution.chi[i]!;
     }
@@ -120,6 +125,7 @@ export function predict(
     chi,
     paths: contributions.map((contribution) => describePath(contribution, options, k, total)),
     shells: describeShells(contributions, options, total),
+    ...(options.bands ? { bands: priorBands(bandSites, coordinatePrecision(structure), options) } : {}),
     transform: { R: transform.R, real: transform.real, imaginary: transform.imaginary, window },
     neglected: Math.max(...signals.map(({ neglected }) => neglected)),
     warnings: unique(warnings),
@@ -137,15 +143,15 @@ function contributionsOf(signal: SiteSignal, thermal: ThermalModel | undefined, 
       return { atom, position, element, mass: elementBySymbol(element).mass };
     });
     const sigma2 = thermal ? thermal.sigma2(route) : 0;
-    const anharmonic = thermal && path.legs === 2 && path.halfLength <= FIRST_SHELL * nearest;
-    const disorder = { sigma2, c3: anharmonic ? morseThirdCumulant(sigma2, thermal.sigma2AtZero(route)) : 0 };
+    const isNearest = path.legs === 2 && path.halfLength <= FIRST_SHELL * nearest;
+    const disorder = { sigma2, c3: thermal && isNearest ? morseThirdCumulant(sigma2, thermal.sigma2AtZero(route)) : 0 };
     const chi = sum.path(index, disorder, options.s02, new Float64Array(k.length));
     let area = 0;
     for (let i = 0; i < k.length; i++) {
       chi[i]! *= site.weight;
       if (k[i]! >= Math.min(WINDOW_START, options.kMax - 2)) area += Math.abs(chi[i]! * k[i]! ** 3);
     }
-    return { site: signal, index, weight: site.weight, element: site.atoms[path.vertices[1]!]!.element, disorder, chi, area };
+    return { site: signal, index, weight: site.weight, element: site.atoms[path.vertices[1]!]!.element, disorder, isNearest, chi, area };
   });
 }
 

@@ -26,7 +26,7 @@ export function thermalModel(structure: Structure, site: Site, options: PredictO
   if (suggestion.model === 'springs' && thermal === 'debye') {
     warnings.push({
       code: 'thermal-model',
-      message: `${suggestion.reason} --thermal springs would suit ${site.label} better than the Debye model used.`,
+      message: `${suggestion.reason} The spring model would suit ${site.label} better than the Debye model used.`,
     });
   }
   if (thermal === 'springs') return springNetwork(springBodyOf(structure, site, massOf), { temperature });

@@ -27,6 +27,8 @@ export interface PredictOptions {
   readonly e0: number;
   /** Keep every path's own amplitude and phase in the result. */
   readonly pathSignals: boolean;
+  /** Compute the prior bands too. */
+  readonly bands: boolean;
 }
 
 export interface PredictedPath {
@@ -66,6 +68,17 @@ export interface PredictedNeighbour {
   readonly distance: number;
 }
 
+/** What the prediction spans before it meets data (bands.ts says from which unknowns). */
+export interface Bands {
+  /** Å⁻¹, 0.1-spaced. */
+  readonly k: Float64Array;
+  /** Central 95 % and 68 % of χ. */
+  readonly low95: Float64Array;
+  readonly low68: Float64Array;
+  readonly high68: Float64Array;
+  readonly high95: Float64Array;
+}
+
 export interface Prediction {
   readonly program: { readonly name: 'ringtrue'; readonly version: string };
   readonly structure: { readonly file: string; readonly format: string; readonly atoms: number; readonly title: string };
@@ -95,6 +108,8 @@ export interface Prediction {
   readonly chi: Float64Array;
   readonly paths: readonly PredictedPath[];
   readonly shells: readonly PredictedShell[];
+  /** With `bands`. */
+  readonly bands?: Bands;
   readonly transform: {
     readonly R: Float64Array;
     readonly real: Float64Array;

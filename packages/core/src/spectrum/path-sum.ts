@@ -14,6 +14,8 @@ export interface PathDisorder {
   readonly sigma2: number;
   /** Third cumulant of the half path length, Å³. */
   readonly c3: number;
+  /** Change of the half path length, Å, small: it moves the phase by 2k shift. Default 0. */
+  readonly shift?: number;
 }
 
 /** All paths of one site, evaluated on a k grid for one energy origin. */
@@ -55,7 +57,7 @@ export class PathSum {
     return out;
   }
 
-  private accumulate(j: number, { sigma2, c3 }: PathDisorder, s02: number, out: Float64Array): Float64Array {
+  private accumulate(j: number, { sigma2, c3, shift = 0 }: PathDisorder, s02: number, out: Float64Array): Float64Array {
     const { kTheory, re, im, inverseLambda } = this;
     const { degeneracy, halfLength } = this.signals[j]!.path;
     const nk = kTheory.length;
@@ -63,7 +65,7 @@ export class PathSum {
     for (let i = 0; i < nk; i++) {
       const k = kTheory[i]!;
       const damping = s02 * degeneracy * Math.exp(-2 * sigma2 * k * k);
-      const phase = -4 * k * sigma2 * (1 / halfLength + inverseLambda[i]!) - (4 / 3) * c3 * k * k * k;
+      const phase = 2 * k * shift - 4 * k * sigma2 * (1 / halfLength + inverseLambda[i]!) - (4 / 3) * c3 * k * k * k;
       out[i]! += damping * (im[base + i]! * Math.cos(phase) + re[base + i]! * Math.sin(phase));
     }
     return out;
