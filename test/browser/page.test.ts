@@ -69,6 +69,7 @@ test('one press on the example leads to curves and shells', async () => {
 test('markup in a file is shown as text', async () => {
   const evil = '3\n<img src=x onerror="document.title=1"><script>document.title=2</script>\nMn 0 0 0\nO 1.9 0 0\nO -1.9 0 0\n';
   await page.setInputFiles('input[type=file]', { name: '<b>evil</b>.xyz', mimeType: 'text/plain', buffer: Buffer.from(evil) });
+  await page.getByLabel('Absorber').fill('Mn');
   await page.getByRole('button', { name: 'Predict' }).click();
   await page.getByRole('heading', { name: '<b>evil</b>.xyz' }).waitFor();
   expect(await page.getByText('<script>document.title=2</script>').count()).toBe(1);
@@ -77,6 +78,7 @@ test('markup in a file is shown as text', async () => {
 
 test('a file that is no structure, and an absorber that is not there, are told plainly', async () => {
   await page.setInputFiles('input[type=file]', { name: 'letter.txt', mimeType: 'text/plain', buffer: Buffer.from('Dear colleague,\n') });
+  await page.getByLabel('Absorber').fill('Mn');
   await page.getByRole('button', { name: 'Predict' }).click();
   await expect.poll(() => page.getByRole('alert').textContent()).toContain('letter.txt: the file is neither XYZ');
   await page.getByRole('button', { name: 'Show the invented example' }).click();
@@ -93,4 +95,25 @@ test('the keyboard alone reaches the example', async () => {
   }
   await page.keyboard.press('Enter');
   await page.getByRole('heading', { name: 'tideglass.cif' }).waitFor();
+});
+
+test('a run is cancelled by its button and by another file, and the next one works', async () => {
+  await page.getByLabel('Radius').fill('9');
+  await page.getByLabel('Radius').blur();
+  await page.getByRole('button', { name: 'Show the invented example' }).click();
+  await page.getByRole('button', { name: 'Cancel' }).click();
+  await page.getByRole('button', { name: 'Predict' }).waitFor();
+  expect(await page.locator('svg').count()).toBe(0);
+  await page.getByRole('button', { name: 'Predict' }).click();
+  const other = '3\nother\nMn 0 0 0\nO 1.9 0 0\nO -1.9 0 0\n';
+  await page.setInputFiles('input[type=file]', { name: 'other.xyz', mimeType: 'text/plain', buffer: Buffer.from(other) });
+  await page.getByRole('button', { name: 'Predict' }).click();
+  await page.getByRole('heading', { name: 'other.xyz' }).waitFor();
+});
+
+test('a worker that cannot be loaded is told, not waited for', async () => {
+  await page.route('**/worker*.js', (route) => route.abort());
+  await page.getByRole('button', { name: 'Show the invented example' }).click();
+  await expect.poll(() => page.getByRole('alert').textContent()).toContain('reload the page');
+  faults.length = 0; // the failed request itself is logged by the browser
 });

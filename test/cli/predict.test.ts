@@ -2,7 +2,7 @@ import { mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'n
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, beforeAll, expect, test } from 'vitest';
-import { VERSION } from '../../packages/cli/src/version.js';
+import { VERSION } from '../../packages/core/src/version.js';
 import { expectNear } from '../support/expect-near.js';
 import { ringtrue } from '../support/ringtrue.js';
 
@@ -165,7 +165,7 @@ test('a hundred thousand atoms are computed or refused clearly', () => {
 });
 
 test('help of every command has examples', () => {
-  for (const command of ['predict', 'serve']) {
+  for (const command of ['predict', 'sites', 'reduce', 'dose', 'serve']) {
     const { code, out } = ringtrue(command, '--help');
     expect(code).toBe(0);
     expect(out).toMatch(/Examples?:/);

@@ -18,11 +18,11 @@ const LARGEST_FILE = 100e6;
 @customElement('rt-app')
 export class App extends LitElement {
   @state() private candidate: Candidate | undefined;
-  @state() private absorber = 'Mn';
+  @state() private absorber = '';
   @state() private edge: 'K' | 'L3' | 'L2' | 'L1' = 'K';
   @state() private thermal: 'debye' | 'springs' = 'debye';
-  @state() private temperature = 15;
-  @state() private debyeTemperature = 500;
+  @state() private temperature = 300;
+  @state() private debyeTemperature: number | undefined;
   @state() private radius = 5;
   @state() private running = false;
   @state() private fault: string | undefined;
@@ -84,17 +84,27 @@ export class App extends LitElement {
   }
 
   private renderChoices(): TemplateResult {
-    const numeric = (label: string, unit: string, value: number, low: number, high: number, set: (value: number) => void) => html`
+    const numeric = (
+      label: string,
+      unit: string,
+      value: number | undefined,
+      low: number,
+      high: number,
+      set: (value: number | undefined) => void,
+    ) => html`
       <label>
         <span>${label}</span>
         <input
           type="number"
-          .value=${String(value)}
+          .value=${value === undefined ? '' : String(value)}
           min=${low}
           max=${high}
           step="any"
-          required
-          @change=${(event: Event) => set(Number((event.target as HTMLInputElement).value))}
+          placeholder=${value === undefined ? 'assumed' : ''}
+          @change=${(event: Event) => {
+            const { value: text } = event.target as HTMLInputElement;
+            set(text === '' ? undefined : Number(text));
+          }}
         />
         <span class="unit">${unit}</span>
       </label>
@@ -112,6 +122,7 @@ export class App extends LitElement {
             type="text"
             maxlength="12"
             required
+            placeholder="e.g. Fe"
             .value=${this.absorber}
             @change=${(event: Event) => {
               this.absorber = (event.target as HTMLInputElement).value.trim();
@@ -142,13 +153,13 @@ export class App extends LitElement {
           <span class="unit"></span>
         </label>
         ${numeric('Temperature', 'K', this.temperature, 0, 3000, (value) => {
-          this.temperature = value;
+          this.temperature = value ?? 300;
         })}
         ${numeric('Debye temperature', 'K', this.debyeTemperature, 10, 5000, (value) => {
           this.debyeTemperature = value;
         })}
         ${numeric('Radius', 'Å', this.radius, 1, 12, (value) => {
-          this.radius = value;
+          this.radius = value ?? 5;
         })}
         ${
           this.running
@@ -216,6 +227,7 @@ export class App extends LitElement {
 
   private async take(file: File | undefined): Promise<void> {
     if (!file) return;
+    this.cancel();
     this.prediction = undefined;
     if (file.size > LARGEST_FILE) {
       this.candidate = undefined;
@@ -230,6 +242,8 @@ export class App extends LitElement {
     this.candidate = { file: 'tideglass.cif', text: tideglass };
     this.absorber = 'Mn';
     this.edge = 'K';
+    this.temperature = 15;
+    this.debyeTemperature = 500;
     void this.run();
   };
 
@@ -244,19 +258,26 @@ export class App extends LitElement {
     this.fault = undefined;
     this.prediction = undefined;
     const { absorber, edge, thermal, temperature, debyeTemperature, radius } = this;
-    const outcome = await this.computing.predict(this.candidate.file, this.candidate.text, {
+    const { file, text } = this.candidate;
+    const conditions = {
       absorber,
       edge,
       thermal,
       temperature,
-      debyeTemperature,
       radius,
       bands: true,
-    });
-    if (!outcome) return;
-    this.running = false;
-    if ('fault' in outcome) this.fault = outcome.fault;
-    else this.prediction = outcome.prediction;
+      ...(debyeTemperature === undefined ? {} : { debyeTemperature }),
+    };
+    try {
+      const outcome = await this.computing.predict(file, text, conditions);
+      if (!outcome) return;
+      this.running = false;
+      if ('fault' in outcome) this.fault = outcome.fault;
+      else this.prediction = outcome.prediction;
+    } catch (error) {
+      this.running = false;
+      this.fault = error instanceof Error ? error.message : String(error);
+    }
   }
 
   static override styles = css`

@@ -12,18 +12,29 @@ export class Computing {
     this.cancel();
     this.worker ??= new Worker(new URL('./worker.ts', import.meta.url), { type: 'module' });
     this.remote ??= wrap<WorkerApi>(this.worker);
-    const cancelled = new Promise<undefined>((resolve) => {
+    const { worker, remote } = this;
+    const ended = new Promise<undefined>((resolve, reject) => {
       this.stop = () => resolve(undefined);
+      worker.onerror = () => reject(new Error('the part of the page that computes could not be started or broke off; reload the page'));
     });
-    const outcome = await Promise.race([this.remote.predict(...input), cancelled]);
-    this.stop = undefined;
-    return outcome;
+    try {
+      return await Promise.race([remote.predict(...input), ended]);
+    } catch (error) {
+      this.discard();
+      throw error;
+    } finally {
+      if (this.worker === worker) this.stop = undefined;
+    }
   }
 
   /** End a run under way; the next one starts in a new worker. */
   cancel(): void {
     if (!this.stop) return;
     this.stop();
+    this.discard();
+  }
+
+  private discard(): void {
     this.stop = undefined;
     this.worker?.terminate();
     this.worker = undefined;

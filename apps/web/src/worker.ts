@@ -1,5 +1,5 @@
 /** All computing happens here, off the page's thread. Faults travel as their message: an Error loses its class on the way. */
-import { type Prediction, type PredictOptions, predict, readStructure } from '@ringtrue/core';
+import { type Prediction, type PredictOptions, predict, readStructure, VERSION } from '@ringtrue/core';
 import { expose } from 'comlink';
 
 export type Outcome = { readonly prediction: Prediction } | { readonly fault: string };
@@ -8,7 +8,7 @@ const api = {
   predict(file: string, text: string, options: Partial<PredictOptions> & { readonly absorber: string }): Outcome {
     try {
       const structure = readStructure(text, { fileName: file });
-      return { prediction: predict(structure, options, { file, version: '0.1.0', now: () => performance.now() / 1000 }) };
+      return { prediction: predict(structure, options, { file, version: VERSION, now: () => performance.now() / 1000 }) };
     } catch (error) {
       return { fault: `${file}: ${error instanceof Error ? error.message : String(error)}` };
     }

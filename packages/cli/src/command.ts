@@ -15,7 +15,8 @@ export function exitCodeOf(error: unknown): 1 | 2 {
 
 /**
  * Run a command's work. Whatever goes wrong ends as one line on standard error and an exit code, never as a stack trace.
- * Ctrl-C needs no handler: the process ends at once, and files are only ever renamed into place whole.
+ * Ctrl-C needs no handler: the process ends at once. Every file of a result is renamed into place whole, result.json last, so a
+ * folder with a result.json is complete; an interrupted run can leave a file named .part-….
  */
 export async function runCommand(work: () => void | Promise<void>): Promise<void> {
   try {

@@ -1,13 +1,12 @@
 /** `ringtrue dose`: does the sample change under the beam? */
 import { basename } from 'node:path';
-import { dose } from '@ringtrue/core';
+import { dose, VERSION } from '@ringtrue/core';
 import type { Command } from 'commander';
 import { runCommand } from './command.js';
 import { addEvidenceOptions, type EvidenceFlags, notesOf, readScans, reduceOptionsOf } from './evidence-options.js';
 import { writeFolder } from './files.js';
 import { toJson } from './json.js';
 import { plain, textTable } from './terminal.js';
-import { VERSION } from './version.js';
 
 const EXAMPLES = `
 Examples:

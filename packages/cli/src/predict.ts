@@ -1,6 +1,6 @@
 /** `ringtrue predict`: a structure file to a predicted χ(k). */
 import { basename } from 'node:path';
-import { InputError, type Prediction, type PredictOptions, predict, ReadError, readStructure } from '@ringtrue/core';
+import { InputError, type Prediction, type PredictOptions, predict, ReadError, readStructure, VERSION } from '@ringtrue/core';
 import { chiInK, chiInR } from '@ringtrue/figures';
 import { csvTable, predictionHtml, tablesOf } from '@ringtrue/report';
 import { type Command, InvalidArgumentError, Option } from 'commander';
@@ -8,7 +8,6 @@ import { runCommand, UsageError } from './command.js';
 import { readText, writeFolder } from './files.js';
 import { toJson } from './json.js';
 import { plain, smallPlot, textTable } from './terminal.js';
-import { VERSION } from './version.js';
 
 interface Flags extends Partial<PredictOptions> {
   readonly absorber: string;
@@ -60,6 +59,7 @@ function number(text: string): number {
 
 function run(file: string, { json, out, ...options }: Flags): void {
   const prediction = compute(file, { ...options, bands: json === true || out !== undefined });
+  if (process.stderr.isTTY) process.stderr.write('\r\u001b[K');
   if (out !== undefined) writeFolder(out, filesOf(prediction));
   if (json) {
     process.stdout.write(`${toJson(prediction)}\n`);
@@ -74,12 +74,28 @@ function compute(file: string, options: Omit<Flags, 'json' | 'out'>): Prediction
   const text = readText(file);
   try {
     const structure = readStructure(text, { fileName: file });
-    return predict(structure, options, { file: basename(file), version: VERSION, now: () => performance.now() / 1000 });
+    return predict(structure, options, { file: basename(file), version: VERSION, now: () => performance.now() / 1000, ...progress() });
   } catch (error) {
     if (error instanceof ReadError) throw new UsageError(`${file}: ${error.message}`);
     if (error instanceof InputError) throw new UsageError(`${file}: ${error.message}`);
     throw error;
   }
+}
+
+/** A line on standard error that overwrites itself, where a person is looking. */
+function progress(): { running?: { onProgress: (stage: string, fraction: number) => void } } {
+  if (!process.stderr.isTTY) return {};
+  let shown = '';
+  return {
+    running: {
+      onProgress(stage, fraction) {
+        const line = `${stage} ${Math.round(100 * fraction)} %`;
+        if (line === shown) return;
+        shown = line;
+        process.stderr.write(`\r\u001b[K${plain(line)}`);
+      },
+    },
+  };
 }
 
 function filesOf(prediction: Prediction): Map<string, string> {

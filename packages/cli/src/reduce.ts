@@ -1,13 +1,12 @@
 /** `ringtrue reduce`: measured absorption to chi(k) with its noise. */
 import { basename } from 'node:path';
-import { type MeasuredScan, type ReduceOptions, type Reduction, reduce, writeXdi } from '@ringtrue/core';
+import { type MeasuredScan, type ReduceOptions, type Reduction, reduce, VERSION, writeXdi } from '@ringtrue/core';
 import { type Command, InvalidArgumentError, Option } from 'commander';
 import { runCommand } from './command.js';
 import { addEvidenceOptions, type EvidenceFlags, notesOf, number, readScans, reduceOptionsOf } from './evidence-options.js';
 import { writeFolder } from './files.js';
 import { toJson } from './json.js';
 import { plain, smallPlot, textTable } from './terminal.js';
-import { VERSION } from './version.js';
 
 interface Flags extends EvidenceFlags {
   readonly backgroundBelow?: number;

@@ -50,3 +50,4 @@ export {
   type XyzFrame,
   XyzFrames,
 } from './structure/index.js';
+export { VERSION } from './version.js';

@@ -38,7 +38,7 @@ export function chiInR({ transform, structure }: Prediction): string {
     curves: [{ x: R, y: magnitude, tone: 0 }],
     xDomain: [0, 6],
     xLabel: 'R, not phase-corrected (Å)',
-    yLabel: `|χ(R)|, k${SUPERSCRIPT[window.kWeight] ?? ''}-weighted`,
+    yLabel: `|χ(R)| (Å${['⁻¹', '⁻²', '⁻³', '⁻⁴'][window.kWeight] ?? ''})`,
     description: `Magnitude of the Fourier transform of the predicted EXAFS of ${structure.file}, k from ${window.kMin} to ${window.kMax} per Å`,
   });
 }

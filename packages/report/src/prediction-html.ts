@@ -24,7 +24,7 @@ export function predictionHtml(prediction: Prediction): string {
     ['Absorber', absorbers.map(({ label, weight }) => `${label} (weight ${weight.toFixed(3)})`).join(', ')],
     ['Edge', options.edge],
     ['Temperature', `${options.temperature} K`],
-    ['Thermal model', options.thermal === 'debye' ? `correlated Debye, θ_D ${options.debyeTemperature ?? 'assumed'} K` : 'none'],
+    ['Thermal disorder', thermalWords(options)],
     ['Self-energy', options.selfEnergy],
     ['Longest half path', `${options.radius} Å`],
     ['S0²', String(options.s02)],
@@ -55,3 +55,18 @@ function htmlTable({ title, columns, rows }: Table): string {
 }
 
 const number = (value: number): string => (Number.isInteger(value) ? String(value) : value.toPrecision(4));
+
+/** The thermal model in words, with the inputs the user gave; what was assumed instead stands among the notes. */
+function thermalWords({ thermal, debyeTemperature, temperature }: Prediction['options']): string {
+  const debye =
+    debyeTemperature === undefined
+      ? 'correlated Debye model, Debye temperature assumed'
+      : `correlated Debye model, Debye temperature ${debyeTemperature} K`;
+  const words = {
+    debye,
+    springs: 'springs set up from the coordinates',
+    einstein: `Einstein oscillators by bond, beyond them the ${debye}`,
+    none: 'none',
+  };
+  return `${words[thermal]}${thermal === 'none' ? '' : `, at ${temperature} K`}`;
+}
