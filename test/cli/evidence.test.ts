@@ -59,6 +59,22 @@ test('reduce --out writes XDI that reads again as the same chi', () => {
   expect(ringtrue('reduce', join(out, 'absorption.xdi'), '--json').code).toBe(0);
 });
 
+test('reduce leaves a point out when asked for, and corrects a thick sample of stated composition', () => {
+  const rows = scan(5).split('\n');
+  const [energy, mu] = rows[250]!.split(' ').map(Number);
+  rows[250] = `${energy} ${mu! + 0.3}`;
+  const path = file('spike.dat', rows.join('\n'));
+  expect(ringtrue('reduce', path, '--element', 'Fe').out).toMatch(/line 251: the point at .* it was kept/);
+  const { code, out } = ringtrue('reduce', path, '--element', 'Fe', '--leave-out-flagged');
+  expect(code).toBe(0);
+  expect(out).toMatch(/line 251: the point at .* it was left out/);
+  expect(out).toContain('1 left out, 0 kept');
+  const fluorescence = rows.map((row, i) => (i === 0 ? '# energy_eV i0 ifluor' : row.replace(' ', ' 1 '))).join('\n');
+  const thick = ringtrue('reduce', file('thick.dat', fluorescence), '--element', 'Fe', '--self-absorption', 'Fe:0.7,O:0.3,in=30,out=60');
+  expect(thick.code).toBe(0);
+  expect(thick.out).toMatch(/chi raised by 3\d\d % at the edge/);
+});
+
 test('dose finds a drift and says what to keep', () => {
   const names = Array.from({ length: 6 }, (_, s) => file(`dose${s}.dat`, scan(50 + s, 0.3 * s)));
   const { code, out } = ringtrue('dose', ...names, '--element', 'Fe', '--json');
@@ -83,6 +99,12 @@ test.each([
     /5 Å⁻¹ are needed|points between/,
   ],
   ['a range the wrong way round', () => ['reduce', file('w.dat', scan(1)), '--pre', '-30,-150'], /two rising numbers/],
+  [
+    'a composition without the absorber',
+    () => ['reduce', file('w.dat', scan(1)), '--element', 'Fe', '--self-absorption', 'TiO2'],
+    /"TiO2" holds no Fe/,
+  ],
+  ['a half sample', () => ['reduce', file('w.dat', scan(1)), '--element', 'Fe', '--self-absorption', 'total=3'], /a formula like Fe2O3/],
   ['one scan for dose', () => ['dose', file('w.dat', scan(1)), '--element', 'Fe'], /two scans or more/],
   ['a bad XDI', () => ['reduce', 'test/external/xdi/bad05_ragged_rows.xdi'], /line 25: every row needs 4 numbers/],
 ] as [string, () => string[], RegExp][])('%s: one line, exit code 2', (_, args, message) => {

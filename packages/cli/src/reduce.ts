@@ -13,24 +13,27 @@ interface Flags extends EvidenceFlags {
   readonly kMax?: number;
   readonly normalisation?: 'atomic' | 'constant';
   readonly selfAbsorption?: NonNullable<ReduceOptions['selfAbsorption']>;
+  readonly leaveOutFlagged?: boolean;
 }
 
-/** "absorber=1,total=3,fluorescence=2,in=45,out=45" */
+/** "Fe2O3", "Fe2O3,in=45,out=45" or "absorber=1,total=3,fluorescence=2,in=45,out=45" */
 function sample(text: string): NonNullable<ReduceOptions['selfAbsorption']> {
-  const given = new Map(text.split(',').map((part) => part.split('=').map((piece) => piece.trim()) as [string, string]));
-  const known = ['absorber', 'total', 'fluorescence', 'in', 'out'];
+  const parts = text.split(',');
+  const given = new Map(
+    parts.filter((part) => part.includes('=')).map((part) => part.split('=').map((piece) => piece.trim()) as [string, string]),
+  );
+  const composition = parts.filter((part) => !part.includes('=')).join(',');
+  const known = composition ? ['in', 'out'] : ['absorber', 'total', 'fluorescence', 'in', 'out'];
   const wrong = [...given].find(([word, value]) => !known.includes(word) || !(Number(value) > 0));
-  if (wrong || !known.slice(0, 3).every((word) => given.has(word))) {
-    throw new InvalidArgumentError(`absorber=1,total=3,fluorescence=2 and perhaps in=45,out=45 are wanted, got "${plain(text)}".`);
+  if (wrong || (!composition && !known.slice(0, 3).every((word) => given.has(word)))) {
+    throw new InvalidArgumentError(
+      `a formula like Fe2O3, parts by mass like Fe:0.05,Si:0.44,O:0.51, or absorber=1,total=3,fluorescence=2, then perhaps in=45,out=45, are wanted, got "${plain(text)}".`,
+    );
   }
-  const angle = (word: string) => Number(given.get(word) ?? 45);
-  return {
-    absorber: Number(given.get('absorber')),
-    total: Number(given.get('total')),
-    atFluorescence: Number(given.get('fluorescence')),
-    angleIn: angle('in'),
-    angleOut: angle('out'),
-  };
+  const angles = { angleIn: Number(given.get('in') ?? 45), angleOut: Number(given.get('out') ?? 45) };
+  if (composition) return { composition, ...angles };
+  const [absorber, total, atFluorescence] = known.slice(0, 3).map((word) => Number(given.get(word)));
+  return { absorber: absorber!, total: total!, atFluorescence: atFluorescence!, ...angles };
 }
 
 const EXAMPLES = `
@@ -38,9 +41,10 @@ Examples:
   ringtrue reduce scan1.xdi scan2.xdi scan3.xdi --out reduced
   ringtrue reduce scan.dat --element Fe --edge K --columns energy=1,i0=2,it=3 --background-below 0.8
   ringtrue reduce fluorescence.csv --element Mn --columns energy=1,i0=2,if=3+4+5+6 --json > mn.json
+  ringtrue reduce rust.dat --element Fe --columns energy=1,i0=2,if=3 --self-absorption Fe2O3,in=30,out=60
   ringtrue reduce chi.dat --columns k=1,chi=2 --chi-weight 3
 
-Every choice is listed with its reason. Points that stick out are flagged, never removed.`;
+Every choice is listed with its reason. Points that stick out are listed, and kept unless --leave-out-flagged is given.`;
 
 export function addReduce(program: Command): void {
   addEvidenceOptions(
@@ -64,9 +68,10 @@ export function addReduce(program: Command): void {
     )
     .option(
       '--self-absorption <sample>',
-      'correct fluorescence of a thick sample; absorptions above the edge: absorber=1,total=3,fluorescence=2,in=45,out=45',
+      'correct fluorescence of a thick, flat sample of this make: Fe2O3 or Fe:0.05,Si:0.44,O:0.51 or its absorptions at the edge, absorber=1,total=3,fluorescence=2; then beam and detector from the surface, degrees (default in=45,out=45)',
       sample,
     )
+    .option('--leave-out-flagged', 'leave out the points that stick out, and list them (default: they are kept and listed)')
     .option('--out <folder>', 'write chi.xdi, absorption.xdi, tables and result.json into a folder')
     .addHelpText('after', EXAMPLES)
     .action((files: string[], flags: Flags) => runCommand(() => run(files, flags)));
@@ -74,13 +79,14 @@ export function addReduce(program: Command): void {
 
 function run(files: readonly string[], flags: Flags): void {
   const scans = readScans(files, flags);
-  const { backgroundBelow, kMax, normalisation, selfAbsorption } = flags;
+  const { backgroundBelow, kMax, normalisation, selfAbsorption, leaveOutFlagged } = flags;
   const reduction = reduce(scans, {
     ...reduceOptionsOf(flags),
     ...(backgroundBelow === undefined ? {} : { backgroundBelow }),
     ...(kMax === undefined ? {} : { kMax }),
     ...(normalisation === undefined ? {} : { normalisation }),
     ...(selfAbsorption === undefined ? {} : { selfAbsorption }),
+    ...(leaveOutFlagged === undefined ? {} : { leaveOutFlagged }),
   });
   const result = { program: { name: 'ringtrue', version: VERSION }, files: files.map((file) => basename(file)), ...reduction };
   if (flags.out !== undefined) writeFolder(flags.out, filesOf(files, scans, reduction, toJson(result)));

@@ -99,15 +99,29 @@ export function rangesFor(
   const form = options.preForm ?? 'line';
   const degree = options.postDegree ?? (post[1] - post[0] < SHORT_POST_EDGE ? 1 : 2);
   const words = ([a, b]: readonly [number, number]) => `${a.toFixed(0)} to ${b.toFixed(0)} eV`;
-  choices.push({
-    what: 'pre-edge',
-    value: `${form}, ${words(pre)}`,
-    why: options.pre ? 'given' : 'default: from 150 eV before the edge, or where the scan begins',
-  });
-  choices.push({
-    what: 'post-edge',
-    value: `degree ${degree}, ${words(post)}`,
-    why: options.post ? 'given' : `default: from 100 eV above the edge, where the strong structure is over, to ${end}`,
-  });
+  const start = post[0] === 100 ? '100 eV above the edge, where the strong structure is over' : 'a third of a short scan';
+  choices.push(
+    {
+      what: 'pre-edge',
+      value: words(pre),
+      why: options.pre
+        ? 'given'
+        : `default: from ${before > -150 ? 'where the scan begins' : '150 eV before the edge'} to where its foot begins`,
+    },
+    {
+      what: 'pre-edge form',
+      value: form,
+      why: options.preForm ? 'given' : 'default: a line is common practice over so short a range',
+    },
+    { what: 'post-edge', value: words(post), why: options.post ? 'given' : `default: from ${start}, to ${end}` },
+    {
+      what: 'post-edge degree',
+      value: `${degree}`,
+      why:
+        options.postDegree === undefined
+          ? `default: the post-edge is ${degree === 1 ? 'shorter' : 'longer'} than ${SHORT_POST_EDGE} eV`
+          : 'given',
+    },
+  );
   return { pre, post, form, degree, after };
 }

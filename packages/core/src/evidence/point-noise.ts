@@ -52,9 +52,18 @@ export interface Glitch extends Diagnostic {
   readonly energyEv: number;
   /** In standard deviations of the points around. */
   readonly deviation: number;
+  readonly leftOut: boolean;
 }
 
-/** Points that stick out by more than 6 standard deviations, the largest of each group of neighbours. They are flagged, never removed. */
+/** A flagged point with its sentence. */
+export function glitch(point: Pick<Glitch, 'energyEv' | 'deviation'> & { readonly line?: number }, leftOut: boolean): Glitch {
+  const size = Math.abs(point.deviation).toFixed(0);
+  const message = `the point at ${point.energyEv.toFixed(2)} eV sticks out by ${size} standard deviations; it was ${leftOut ? 'left out' : 'kept'}`;
+  return { ...point, code: 'glitch', message, leftOut };
+}
+
+/** Points that stick out by more than 6 standard deviations, the largest of each group of neighbours. Of a
+ * group the point beside it may stick out most, since the bad ones are what it is held against. */
 export function findGlitches(noise: PointNoise, energyEv: Float64Array, lines: Int32Array, where: (energyEv: number) => boolean): Glitch[] {
   const found: Glitch[] = [];
   const size = (i: number) => Math.abs(noise.deviation[i] ?? 0);
@@ -62,8 +71,7 @@ export function findGlitches(noise: PointNoise, energyEv: Float64Array, lines: I
     if (!(size(i) > GLITCH) || !where(energyEv[i]!)) continue;
     if ([i - 2, i - 1, i + 1, i + 2].some((j) => size(j) > size(i))) continue;
     const deviation = noise.deviation[i]!;
-    const message = `the point at ${energyEv[i]!.toFixed(2)} eV sticks out by ${Math.abs(deviation).toFixed(0)} standard deviations; it was kept`;
-    found.push({ code: 'glitch', message, line: lines[i]!, energyEv: energyEv[i]!, deviation });
+    found.push(glitch({ line: lines[i]!, energyEv: energyEv[i]!, deviation }, false));
   }
   return found;
 }

@@ -54,6 +54,11 @@ export function reduceChi(scans: readonly ChiScan[], options: ReduceOptions): Re
     flagged: [],
     choices: [
       { what: 'background', value: 'none removed', why: 'chi(k) was ready; its normalisation and background are those of whoever made it' },
+      {
+        what: 'k range',
+        value: `${k[0]!.toFixed(2)} to ${k.at(-1)!.toFixed(2)} Å⁻¹`,
+        why: options.kMax === undefined ? 'default: as far as the data reach' : 'given',
+      },
     ],
     warnings: [
       ...scans.flatMap((scan) => scan.diagnostics),

@@ -61,3 +61,48 @@ test('ready chi on the grid passes untouched; weights are taken off; kinds do no
   expect(() => reduce([readScan(text(0)), changed(all)])).toThrow(/cannot be merged/);
   expect(() => reduce([])).toThrow(/a scan is needed/);
 });
+
+test('points that stick out are kept and listed, or left out when asked for, and listed', () => {
+  const spoilt = (e: number) => (Math.abs(e - 300) < 4 ? 0.3 : 0);
+  const clean = changed(all);
+  const hit = Array.from(base.energyEv.keys()).filter((i) => spoilt(base.energyEv[i]! - 7112) !== 0);
+  expect(hit.length).toBe(2); // neighbours, of which one pass finds the larger only
+  const scan = changed(all, (y, e) => y + (base.energyEv[hit[0]!]! - 7112 === e ? 0.5 : spoilt(e)));
+  const kept = reduce([scan]);
+  expect(kept.flagged.length).toBeGreaterThan(0);
+  expect(kept.flagged.every(({ leftOut, message }) => !leftOut && message.endsWith('it was kept'))).toBe(true);
+  expect(kept.energyEv).toHaveLength(base.energyEv.length);
+  const without = reduce([scan], { leaveOutFlagged: true });
+  expect(without.flagged.map(({ energyEv }) => energyEv)).toEqual(hit.map((i) => base.energyEv[i]!));
+  expect(without.flagged.every(({ leftOut, message, line }) => leftOut && message.endsWith('it was left out') && line! > 1)).toBe(true);
+  expect(without.energyEv).toHaveLength(base.energyEv.length - hit.length);
+  expect(without.choices.at(-1)).toEqual({ what: 'points that stick out', value: `${hit.length} left out, 0 kept`, why: 'given' });
+  const truth = reduce([clean]);
+  const off = ({ chi }: typeof kept) => Math.max(...chi.map((y, i) => (i < 50 ? 0 : Math.abs(y - truth.chi[i]!))));
+  // Noise is 0.001 a point; what fills the gap is good to a few of it
+  expect(off(without)).toBeLessThan(0.01);
+  expect(off(kept)).toBeGreaterThan(0.1);
+  // Nothing sticks out, nothing is left out
+  expect(reduce([clean], { leaveOutFlagged: true }).chi).toEqual(truth.chi);
+});
+
+test('every choice says whether it was given or why it is the default', () => {
+  const reasons = (options: Parameters<typeof reduce>[1]) =>
+    new Map(reduce([changed(all)], options).choices.map(({ what, why }) => [what, why]));
+  for (const [, why] of reasons({})) expect(why).toMatch(/^default: .{15}|^steepest rise near the tabulated|^as the file/);
+  const given = reasons({
+    edge: 'K',
+    e0: 7112,
+    pre: [-140, -35],
+    preForm: 'victoreen',
+    post: [110, 700],
+    postDegree: 2,
+    normalisation: 'atomic',
+    kMax: 12,
+    backgroundBelow: 1,
+    backgroundWeight: 2,
+    leaveOutFlagged: false,
+  });
+  expect([...given.keys()]).toEqual([...reasons({}).keys()]);
+  for (const [, why] of given) expect(why).toBe('given');
+});

@@ -6,6 +6,7 @@
  * Given E0, the ranges and the step, all of it is linear in μ. Ranges have soft ends and averages soft weights, so that no result jumps.
  */
 
+import type { Edge } from '../atom/types.js';
 import { type Diagnostic, InputError } from '../errors.js';
 import { fourierTransform, K_STEP, kFromEnergyEv, uniformKGrid } from '../spectrum/index.js';
 import { mergeScans } from './align.js';
@@ -14,16 +15,18 @@ import { findEdge, rangesFor } from './edge.js';
 import { AVERAGING, applyMap, indexBelow, localFit } from './local-fit.js';
 import { noiseOf } from './noise.js';
 import { atomicDecay, type Normalised, normalise } from './normalise.js';
-import { findGlitches, pointNoise } from './point-noise.js';
+import { findGlitches, type Glitch, glitch, pointNoise } from './point-noise.js';
 import { reduceChi } from './ready-chi.js';
 import type { Choice, ReduceOptions, Reduction } from './reduction.js';
-import { selfAbsorptionFactors } from './self-absorption.js';
+import { selfAbsorption } from './self-absorption.js';
 import type { AbsorptionScan, MeasuredScan } from './types.js';
 
 /** eV: over less, the step is uncertain by 5 % or more (a scan of the tests' cut at 120 eV loses 20 %). */
 const LEAST_POST_EDGE = 200;
 /** Å⁻¹ between points beyond which the scan is called sparse: at 0.1, distances beyond 15 Å fold back. */
 const SPARSE = 0.1;
+/** A group of neighbours loses one point a pass; what is still flagged after so many is no glitch but the spectrum. */
+const LEAVING_OUT_PASSES = 4;
 /** The first pass leaves some 5 % in the step, each further one a tenth of it. */
 const STEP_PASSES = 2;
 
@@ -59,23 +62,102 @@ export function reduce(scans: readonly MeasuredScan[], options: ReduceOptions = 
   return absorption.length > 0 ? reduceAbsorption(absorption, options) : reduceChi(ready, options);
 }
 
+/** The merged absorption that is reduced, and where its points came from. */
+interface Points {
+  readonly energyEv: Float64Array;
+  readonly mu: Float64Array;
+  readonly standardError: Float64Array | undefined;
+  readonly lines: Int32Array;
+}
+
 function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptions): Reduction {
   const choices: Choice[] = [];
   const first = scans[0]!;
   const element = options.element ?? first.element;
   const edge = options.edge ?? first.edge ?? 'K';
-  const warnings: Diagnostic[] = scans.flatMap((scan) => scan.diagnostics);
   for (const scan of scans) {
     if (scan.element && scan.element !== first.element)
       throw new InputError(`reduce: the scans are of ${first.element} and of ${scan.element}`);
   }
+  const edgeWhy = first.edge ? 'as the file or the options declare' : 'default: no edge was declared';
+  choices.push({ what: 'edge', value: `${element ? `${element} ` : ''}${edge}`, why: options.edge ? 'given' : edgeWhy });
   let e0: number;
   if (options.e0 === undefined) e0 = findEdge(first, element, edge, choices);
   else {
     e0 = options.e0;
     choices.push({ what: 'E0', value: e0.toFixed(2), why: 'given' });
   }
-  const { energyEv, mu, skipped, standardError, shifts } = mergeScans(scans, e0);
+  const merged = mergeScans(scans, e0);
+  if (scans.length > 1) choices.push(mergeChoice(scans));
+  const { skipped, standardError } = merged;
+  const settings = {
+    e0,
+    edge,
+    element,
+    fluorescence: first.detection === 'fluorescence',
+    scans: scans.map((scan, s) => ({ title: scan.title, shiftEv: merged.shifts[s]!, guess: scan.guess })),
+    warnings: scans.flatMap((scan) => scan.diagnostics),
+  };
+  let points: Points = {
+    energyEv: merged.energyEv,
+    mu: merged.mu,
+    standardError,
+    lines: first.lines.subarray(skipped, skipped + merged.mu.length),
+  };
+  const leftOut: Glitch[] = [];
+  for (let pass = 0; ; pass++) {
+    const reduction = reducePoints(points, { ...settings, choices: [...choices] }, options);
+    const { flagged } = reduction;
+    if (options.leaveOutFlagged && flagged.length > 0 && pass < LEAVING_OUT_PASSES) {
+      leftOut.push(...flagged.map((point) => glitch(point, true)));
+      points = without(points, flagged);
+      continue;
+    }
+    const all = [...leftOut, ...flagged].sort((a, b) => a.energyEv - b.energyEv);
+    return { ...reduction, flagged: all, choices: [...reduction.choices, flaggedChoice(all, options.leaveOutFlagged)] };
+  }
+}
+
+function without({ energyEv, mu, standardError, lines }: Points, flagged: readonly Glitch[]): Points {
+  const gone = new Set(flagged.map((point) => point.energyEv));
+  const kept = (_: number, i: number) => !gone.has(energyEv[i]!);
+  return { energyEv: energyEv.filter(kept), mu: mu.filter(kept), standardError: standardError?.filter(kept), lines: lines.filter(kept) };
+}
+
+function flaggedChoice(flagged: readonly Glitch[], asked: boolean | undefined): Choice {
+  const out = flagged.filter((point) => point.leftOut).length;
+  return {
+    what: 'points that stick out',
+    value: flagged.length === 0 ? 'none' : `${out} left out, ${flagged.length - out} kept`,
+    why: asked === undefined ? 'default: a point is left out only when asked for' : 'given',
+  };
+}
+
+function mergeChoice(scans: readonly AbsorptionScan[]): Choice {
+  const reference = scans.every((scan) => scan.reference);
+  return {
+    what: 'scans',
+    value: `${scans.length}, laid over each other by ${reference ? 'the reference' : 'the edge itself'}, equal weights`,
+    why: `default: ${reference ? 'every scan has a reference channel' : 'not every scan has a reference channel'}; scans of one sample count alike`,
+  };
+}
+
+interface PointSettings {
+  readonly e0: number;
+  readonly edge: Edge;
+  readonly element: string | undefined;
+  readonly fluorescence: boolean;
+  readonly scans: Reduction['scans'];
+  readonly warnings: readonly Diagnostic[];
+  readonly choices: Choice[];
+}
+
+function reducePoints(
+  { energyEv, mu, standardError, lines }: Points,
+  { e0, edge, element, fluorescence, scans, warnings: before, choices }: PointSettings,
+  options: ReduceOptions,
+): Omit<Reduction, 'flagged'> & { readonly flagged: readonly Glitch[] } {
+  const warnings: Diagnostic[] = [...before];
   const { pre, post, form, degree, after } = rangesFor({ energyEv }, e0, options, element, edge, choices);
   const settings = { e0, pre, preForm: form, post, postDegree: degree };
   let shape = normalise(energyEv, mu, settings);
@@ -88,14 +170,21 @@ function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptio
   });
   const decay = atomicDecay(energyEv, e0);
   let factor: Float64Array = decay.map(() => 1);
+  /** Course of the smooth absorption as it was measured. */
+  let course = decay;
   if (options.selfAbsorption) {
-    factor = selfAbsorptionFactors(decay, options.selfAbsorption);
-    choices.push({
-      what: 'self-absorption',
-      value: `chi raised by ${(100 * (factor[indexBelow(energyEv, e0)]! - 1)).toFixed(0)} % at the edge`,
-      why: 'given',
-    });
-  } else if (first.detection === 'fluorescence') warnings.push(selfAbsorptionRisk(energyEv, mu, e0, shape.edgeStep));
+    const damping = selfAbsorption(energyEv, e0, options.selfAbsorption, element, edge);
+    ({ factor, course } = damping);
+    const percent = 100 * (factor[indexBelow(energyEv, e0) + 1]! - 1);
+    choices.push({ what: 'self-absorption', value: `chi raised by ${percent.toFixed(0)} % at the edge`, why: `given: ${damping.basis}` });
+    if (!fluorescence) {
+      const message = 'self-absorption damps fluorescence only; this scan does not say it is fluorescence, and was corrected as asked';
+      warnings.push({ code: 'self-absorption-unexpected', message });
+    }
+  } else if (fluorescence) {
+    choices.push({ what: 'self-absorption', value: 'not corrected', why: "default: the sample's composition was not given" });
+    warnings.push(selfAbsorptionRisk(energyEv, mu, e0, shape.edgeStep));
+  }
 
   const kPoints = energyEv.map((e) => kFromEnergyEv(e - e0));
   const kEnd = Math.min(kPoints.at(-1)!, kFromEnergyEv(after));
@@ -113,7 +202,7 @@ function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptio
   warnings.push(...samplingWarnings(kPoints, energyEv, last, post));
   const map = localFit(kPoints, k, AVERAGING, 0);
   /** What one unit of chi is in the measured absorption (m). */
-  const unitOf = (step: number) => decay.map((a, i) => (step * (constant ? 1 : a)) / factor[i]!);
+  const unitOf = (step: number) => course.map((c, i) => (step * c) / (factor[i]! * (constant ? decay[i]! : 1)));
   const rawOf = ({ edgeStep, postEdge }: Normalised) => {
     const unit = unitOf(edgeStep);
     return mu.map((y, i) => (y - postEdge[i]!) / unit[i]!);
@@ -121,6 +210,11 @@ function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptio
   let onGrid = applyMap(map, rawOf(shape));
   const limit = options.backgroundBelow ? { rLow: options.backgroundBelow, why: 'given' } : backgroundLimit(k, onGrid, last);
   choices.push({ what: 'background below', value: `${limit.rLow.toFixed(2)} Å`, why: limit.why });
+  choices.push({
+    what: 'background weight',
+    value: `k^${options.backgroundWeight ?? 2}`,
+    why: options.backgroundWeight === undefined ? 'default: about undoes the fall of chi, so that all of the range counts' : 'given',
+  });
   const projector = backgroundProjector(k, { rLow: limit.rLow, kWeight: options.backgroundWeight ?? 2 });
   for (let pass = 0; pass < STEP_PASSES; pass++) {
     // Oscillations pull the post-edge and with it the step; what is known of them is taken off before it is fitted again
@@ -142,7 +236,7 @@ function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptio
   const single = pointNoise(kPoints, raw);
   const sigma = standardError ? standardError.map((s, i) => s / unit[i]!) : single.sigma;
   const { noise, sigmaChi } = noiseOf(k, chi, { map, sigma, repeated: standardError !== undefined });
-  const flagged = findGlitches(single, energyEv, first.lines.subarray(skipped), (e) => e < e0 - 25 || e > e0 + 40);
+  const flagged = findGlitches(single, energyEv, lines, (e) => e < e0 - 25 || e > e0 + 40);
   const along = onPoints(smooth, kPoints);
   const curve = energyEv.map((e, i) => (e < e0 ? preEdge[i]! : postEdge[i]! + unit[i]! * along[i]!));
   return {
@@ -159,7 +253,7 @@ function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptio
     preEdge: { range: pre, form, curve: preEdge },
     postEdge: { range: post, degree, curve: postEdge },
     background: { rLow: limit.rLow, kWeight: projector.settings.kWeight, kMax: last, coefficients: projector.coefficients, curve },
-    scans: scans.map((scan, s) => ({ title: scan.title, shiftEv: shifts[s]!, guess: scan.guess })),
+    scans,
     flagged,
     choices,
     warnings,
@@ -206,7 +300,7 @@ function selfAbsorptionRisk(energyEv: Float64Array, mu: Float64Array, e0: number
   const contrast = edgeStep / before;
   const message =
     contrast > 3
-      ? `fluorescence of a concentrated sample (the edge stands ${contrast.toFixed(0)} times above what lies before it): self-absorption may damp chi; state the sample's absorption to correct it`
+      ? `fluorescence of a concentrated sample (the edge stands ${contrast.toFixed(0)} times above what lies before it): self-absorption may damp chi; state the sample's composition to correct it`
       : 'fluorescence: in a thick, concentrated sample self-absorption damps chi; nothing was corrected';
   return { code: 'self-absorption-risk', message };
 }

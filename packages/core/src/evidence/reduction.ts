@@ -28,6 +28,8 @@ export interface ReduceOptions {
   readonly kMax?: number;
   /** Corrects fluorescence of a thick sample. */
   readonly selfAbsorption?: SelfAbsorption;
+  /** Leaves out the points that stick out; default they are kept and flagged. */
+  readonly leaveOutFlagged?: boolean;
 }
 
 /** A value the reduction used, and why: given, or which default. */
@@ -64,7 +66,8 @@ export interface Reduction {
     readonly curve: Float64Array;
   };
   readonly scans: readonly { readonly title: string; readonly shiftEv: Shift; readonly guess: string }[];
-  readonly flagged: readonly (Glitch | Diagnostic)[];
+  /** Points that stick out, kept or left out as each says, by energy. */
+  readonly flagged: readonly Glitch[];
   readonly choices: readonly Choice[];
   readonly warnings: readonly Diagnostic[];
 }
