@@ -82,6 +82,9 @@ test('points that stick out are kept and listed, or left out when asked for, and
   // Noise is 0.001 a point; what fills the gap is good to a few of it
   expect(off(without)).toBeLessThan(0.01);
   expect(off(kept)).toBeGreaterThan(0.1);
+  // A first point that is off makes a good one stick out, which is kept
+  const start = reduce([changed(all, (y, e) => y + (e === base.energyEv[0]! - 7112 ? 0.3 : 0))], { leaveOutFlagged: true });
+  expect(start.flagged.map(({ energyEv, leftOut }) => [energyEv, leftOut])).toEqual([[base.energyEv[2]!, false]]);
   // Nothing sticks out, nothing is left out
   expect(reduce([clean], { leaveOutFlagged: true }).chi).toEqual(truth.chi);
 });

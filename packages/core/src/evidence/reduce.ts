@@ -25,8 +25,8 @@ import type { AbsorptionScan, MeasuredScan } from './types.js';
 const LEAST_POST_EDGE = 200;
 /** Å⁻¹ between points beyond which the scan is called sparse: at 0.1, distances beyond 15 Å fold back. */
 const SPARSE = 0.1;
-/** A group of neighbours loses one point a pass; what is still flagged after so many is no glitch but the spectrum. */
-const LEAVING_OUT_PASSES = 4;
+/** A group of neighbours loses one point a pass. Where more stick out there is a step or a bend, which would be eaten point by point. */
+const LEAVING_OUT_PASSES = 2;
 /** The first pass leaves some 5 % in the step, each further one a tenth of it. */
 const STEP_PASSES = 2;
 
@@ -108,9 +108,12 @@ function reduceAbsorption(scans: readonly AbsorptionScan[], options: ReduceOptio
   for (let pass = 0; ; pass++) {
     const reduction = reducePoints(points, { ...settings, choices: [...choices] }, options);
     const { flagged } = reduction;
-    if (options.leaveOutFlagged && flagged.length > 0 && pass < LEAVING_OUT_PASSES) {
-      leftOut.push(...flagged.map((point) => glitch(point, true)));
-      points = without(points, flagged);
+    // Near an end a point is held against the two last ones, which nothing holds: the fault may be theirs
+    const [low, high] = [points.energyEv[4]!, points.energyEv.at(-5)!];
+    const condemned = flagged.filter((point) => point.energyEv >= low && point.energyEv <= high);
+    if (options.leaveOutFlagged && condemned.length > 0 && pass < LEAVING_OUT_PASSES) {
+      leftOut.push(...condemned.map((point) => glitch(point, true)));
+      points = without(points, condemned);
       continue;
     }
     const all = [...leftOut, ...flagged].sort((a, b) => a.energyEv - b.energyEv);
