@@ -4,7 +4,8 @@
  * of a metal unless as close as a hydride; metals are bonded to metals only where they touch (slack 0.2 Å).
  */
 import { covalentRadius, elementBySymbol } from '../elements/index.js';
-import type { Site, SiteAtom } from './types.js';
+import { LONGEST_LINK } from './pdb-links.js';
+import type { Link, Site, SiteAtom } from './types.js';
 
 const NONMETALS = new Set('H He B C N O F Ne Si P S Cl Ar Ge As Se Br Kr Te I Xe At Rn'.split(' '));
 
@@ -25,10 +26,17 @@ export function shortestBond(one: string, other: string): number {
   return 0.75 * (covalentRadius(one) + covalentRadius(other));
 }
 
-/** The atoms bonded to the absorber, nearest first. */
-export function coordinationShell(site: Site): readonly SiteAtom[] {
-  const shell = site.atoms.slice(1).filter((atom) => atom.distance <= longestBond(site.element, atom.element));
-  // With ligands present, a metal behind them is a neighbour, not a ligand (oxo-bridged pairs, 2.7 Å).
-  const ligands = shell.filter((atom) => !isMetal(atom.element));
+/**
+ * The atoms bonded to the absorber, nearest first.
+ *
+ * @param links  bonds the file states: they count even where they are longer than radii allow, up to LONGEST_LINK
+ */
+export function coordinationShell(site: Site, links: readonly Link[] = []): readonly SiteAtom[] {
+  const own = site.atoms[0]!.source;
+  const linked = new Set(links.flatMap(({ sources: [a, b] }) => (a === own ? [b] : b === own ? [a] : [])));
+  const isLinked = (atom: SiteAtom): boolean => linked.has(atom.source) && atom.distance <= LONGEST_LINK;
+  const shell = site.atoms.slice(1).filter((atom) => atom.distance <= longestBond(site.element, atom.element) || isLinked(atom));
+  // With ligands present, a metal behind them is a neighbour, not a ligand (oxo-bridged pairs, 2.7 Å), unless the file says so.
+  const ligands = shell.filter((atom) => !isMetal(atom.element) || isLinked(atom));
   return isMetal(site.element) && ligands.length > 0 ? ligands : shell;
 }

@@ -64,7 +64,7 @@ export function describeSites(structure: Structure, { file = '', absorber, radiu
   const sites = findSites(structure, { radius, ...(absorber === undefined ? {} : { absorber }) });
   const precision = coordinatePrecision(structure);
   const neighboursOf = (site: Site): DescribedNeighbour[] => {
-    const shell = new Set(coordinationShell(site));
+    const shell = new Set(coordinationShell(site, structure.links));
     return site.atoms.slice(1).map((atom) => ({
       label: atomLabel(structure.atoms[atom.source]!),
       element: atom.element,

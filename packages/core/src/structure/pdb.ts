@@ -10,6 +10,7 @@ import { chargeOf, elementOfPdbName } from './labels.js';
 import { Lines } from './lines.js';
 import { decimalAt } from './numbers.js';
 import { IDENTITY } from './operators.js';
+import { PdbLinks } from './pdb-links.js';
 import { PdbStatistics } from './pdb-statistics.js';
 import { spaceGroupByName } from './space-groups.js';
 import type { Atom, Cell, Residue, Structure, SymmetryOperator, Vec3 } from './types.js';
@@ -25,6 +26,7 @@ export function readPdb(text: string): Structure {
   const lines = new Lines(text);
   const diagnostics: Diagnostic[] = [];
   const statistics = new PdbStatistics();
+  const linkRecords = new PdbLinks();
   const reader = new AtomReader(text, diagnostics);
   const frames: Atom[][] = [[]];
   let crystal: Crystal | undefined;
@@ -56,6 +58,9 @@ export function readPdb(text: string): Structure {
       case 'HEADER':
         header = text.slice(start + 10, Math.min(end, start + 50)).trim();
         break;
+      case 'LINK':
+        linkRecords.take(text.slice(start, end), lines.number);
+        break;
       case 'EXPDTA':
       case 'REMARK':
         statistics.take(text.slice(start, end));
@@ -70,6 +75,7 @@ export function readPdb(text: string): Structure {
   checkOccupancySums(first, diagnostics);
   checkDuplicates(first, diagnostics);
   const known = statistics.result();
+  const links = linkRecords.resolve(first, diagnostics);
   return {
     format: 'pdb',
     title: title || header,
@@ -78,6 +84,7 @@ export function readPdb(text: string): Structure {
     ...(crystal ? { cell: crystal.cell, spaceGroup: crystal.name } : {}),
     operators: crystal?.operators ?? [IDENTITY],
     ...(known ? { statistics: known } : {}),
+    ...(links.length > 0 ? { links } : {}),
     diagnostics: [...diagnostics, ...(crystal?.diagnostics ?? [])],
   };
 }

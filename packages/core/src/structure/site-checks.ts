@@ -47,7 +47,7 @@ export function checkSite(structure: Structure, site: Site): Diagnostic[] {
     say('close-neighbours', `${name(a)} and ${name(b)} are ${apart.toFixed(2)} Å apart, closer than chemistry allows`);
   }
 
-  const shell = coordinationShell(site);
+  const shell = coordinationShell(site, structure.links);
   if (isMetal(site.element) && !shell.some((atom) => isMetal(atom.element))) {
     const linear = ['Cu', 'Ag', 'Au', 'Hg'].includes(site.element);
     const [x, y, z] = [0, 1, 2].map((axis) =>

@@ -59,6 +59,12 @@ export interface Atom {
   readonly line?: number;
 }
 
+/** A bond that the file states. */
+export interface Link {
+  /** Indices into Structure.atoms. */
+  readonly sources: readonly [number, number];
+}
+
 /** What a file states about how well its coordinates are known. */
 export interface RefinementStatistics {
   /** High-resolution limit, Å. */
@@ -85,6 +91,8 @@ export interface Structure {
   readonly operators: readonly SymmetryOperator[];
   readonly spaceGroup?: string;
   readonly statistics?: RefinementStatistics;
+  /** Bonds the file states (LINK of a PDB); absent where it states none. */
+  readonly links?: readonly Link[];
   readonly diagnostics: readonly Diagnostic[];
 }
 
