@@ -8,6 +8,16 @@ export class UsageError extends Error {
   override readonly name = 'UsageError';
 }
 
+/** Run what concerns one file. Errors of the core know the line but not the file; here it is named. */
+export function aboutFile<T>(file: string, work: () => T): T {
+  try {
+    return work();
+  } catch (error) {
+    if (error instanceof ReadError || error instanceof InputError) throw new UsageError(`${file}: ${error.message}`);
+    throw error;
+  }
+}
+
 /** 2: the input or the options; 1: a fault of the program. */
 export function exitCodeOf(error: unknown): 1 | 2 {
   return error instanceof UsageError || error instanceof InputError || error instanceof ReadError ? 2 : 1;

@@ -1,15 +1,7 @@
 /** What `reduce` and `dose` share: their options, and reading scans with the file named in every error. */
-import {
-  InputError,
-  type MeasuredScan,
-  parseColumnRoles,
-  ReadError,
-  type ReduceOptions,
-  readScan,
-  type ScanReadOptions,
-} from '@ringtrue/core';
+import { type MeasuredScan, parseColumnRoles, type ReduceOptions, readScan, type ScanReadOptions } from '@ringtrue/core';
 import { type Command, InvalidArgumentError, Option } from 'commander';
-import { UsageError } from './command.js';
+import { aboutFile, UsageError } from './command.js';
 import { readText } from './files.js';
 import { plain } from './terminal.js';
 
@@ -102,12 +94,7 @@ export function readScans(files: readonly string[], flags: EvidenceFlags): Measu
   };
   return files.map((file) => {
     const text = readText(file);
-    try {
-      return readScan(text, options);
-    } catch (error) {
-      if (error instanceof ReadError || error instanceof InputError) throw new UsageError(`${file}: ${error.message}`);
-      throw error;
-    }
+    return aboutFile(file, () => readScan(text, options));
   });
 }
 

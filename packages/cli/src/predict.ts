@@ -1,10 +1,10 @@
 /** `ringtrue predict`: a structure file to a predicted χ(k). */
 import { basename } from 'node:path';
-import { InputError, type Prediction, type PredictOptions, predict, ReadError, readStructure, VERSION } from '@ringtrue/core';
+import { type Prediction, type PredictOptions, predict, readStructure, VERSION } from '@ringtrue/core';
 import { chiInK, chiInR } from '@ringtrue/figures';
 import { csvTable, predictionHtml, tablesOf } from '@ringtrue/report';
 import { type Command, InvalidArgumentError, Option } from 'commander';
-import { runCommand, UsageError } from './command.js';
+import { aboutFile, runCommand } from './command.js';
 import { readText, writeFolder } from './files.js';
 import { toJson } from './json.js';
 import { plain, smallPlot, textTable } from './terminal.js';
@@ -69,17 +69,10 @@ function run(file: string, { json, out, ...options }: Flags): void {
   }
 }
 
-/** Errors of the core know the line but not the file; here it is named. */
 function compute(file: string, options: Omit<Flags, 'json' | 'out'>): Prediction {
   const text = readText(file);
-  try {
-    const structure = readStructure(text, { fileName: file });
-    return predict(structure, options, { file: basename(file), version: VERSION, now: () => performance.now() / 1000, ...progress() });
-  } catch (error) {
-    if (error instanceof ReadError) throw new UsageError(`${file}: ${error.message}`);
-    if (error instanceof InputError) throw new UsageError(`${file}: ${error.message}`);
-    throw error;
-  }
+  const context = { file: basename(file), version: VERSION, now: () => performance.now() / 1000, ...progress() };
+  return aboutFile(file, () => predict(readStructure(text, { fileName: file }), options, context));
 }
 
 /** A line on standard error that overwrites itself, where a person is looking. */

@@ -1,8 +1,8 @@
 /** `ringtrue sites`: the absorbing sites of a structure file, their neighbours, and what the distances say of the valence. */
 import { basename } from 'node:path';
-import { describeSites, InputError, ReadError, readStructure, type SitesDescription } from '@ringtrue/core';
+import { describeSites, readStructure, type SitesDescription } from '@ringtrue/core';
 import { type Command, InvalidArgumentError } from 'commander';
-import { runCommand, UsageError } from './command.js';
+import { aboutFile, runCommand } from './command.js';
 import { readText } from './files.js';
 import { toJson } from './json.js';
 import { plain, textTable } from './terminal.js';
@@ -50,15 +50,9 @@ function run(file: string, { json, ...options }: Flags): void {
   } else process.stdout.write(summary(description));
 }
 
-/** Errors of the core name the line but not the file; here it is named. */
 function describe(file: string, { strict = false, ...options }: Omit<Flags, 'json'>): SitesDescription {
   const text = readText(file);
-  try {
-    return describeSites(readStructure(text, { fileName: file, strict }), { ...options, file: basename(file) });
-  } catch (error) {
-    if (error instanceof ReadError || error instanceof InputError) throw new UsageError(`${file}: ${error.message}`);
-    throw error;
-  }
+  return aboutFile(file, () => describeSites(readStructure(text, { fileName: file, strict }), { ...options, file: basename(file) }));
 }
 
 function summary({ structure, sites, warnings }: SitesDescription): string {
