@@ -22,6 +22,23 @@ export {
   type XdiContent,
   type XdiFile,
 } from './evidence/index.js';
+export type {
+  Band,
+  CandidateJudgement,
+  Comparison,
+  DisorderRow,
+  Evidence,
+  EvidenceSummary,
+  FindingWord,
+  FittedParameter,
+  Judgement,
+  JudgeOptions,
+  Overlength,
+  RivalResult,
+  ShellStretch,
+  SiteValence,
+  ValenceEntry,
+} from './judgement/index.js';
 export { type PredictContext, predict } from './predict/predict.js';
 export type { PredictedNeighbour, PredictedPath, PredictedShell, Prediction, PredictOptions } from './predict/types.js';
 export type { SelfEnergyName } from './scattering/types.js';

@@ -1,0 +1,18 @@
+/** judgement: from prediction and evidence to a finding. Å, Å⁻¹, Å², eV, K. */
+export type {
+  Band,
+  CandidateJudgement,
+  Comparison,
+  DisorderRow,
+  Evidence,
+  EvidenceSummary,
+  FindingWord,
+  FittedParameter,
+  Judgement,
+  JudgeOptions,
+  Overlength,
+  RivalResult,
+  ShellStretch,
+  SiteValence,
+  ValenceEntry,
+} from './types.js';
