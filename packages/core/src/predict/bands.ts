@@ -1,30 +1,13 @@
 /**
- * The spread a prediction has before it meets any data: draws from what is expected of all that is not known exactly, summed to
- * χ(k). Å, Å⁻¹, Å², eV.
- *
- * | unknown                                            | expected                      | origin |
- * |----------------------------------------------------|-------------------------------|--------|
- * | energy origin                                      | Normal(e0, 4 eV)              | k = 0 is conventional |
- * | ln S0²                                             | Normal(ln s02, 0.13)          | passive electrons, edge step |
- * | ln thermal scale, per class of path                | Normal(0, 0.45)               | common practice: predicted thermal factors are off by 30 to 140 % |
- * | extra static σ², per class                         | half-Normal(0.0015 Å²)        | the structure is one average, the sample an ensemble |
- * | radial error of every scatterer, alike ones as one | Normal(0, s of the structure) | structure/precision.ts |
- * | length, per class                                  | Normal(0, 0.3 %; 0.4 % for N) | error of the phases against measured standards |
- *
- * Classes: nearest neighbours, metal–metal, other single scattering, multiple scattering.
+ * The spread a prediction has before it meets any data: draws from what is expected of all that is not known exactly
+ * (unknowns.ts), around the energy origin and S0² the prediction was asked for, summed to χ(k). Å, Å⁻¹, Å², eV.
  */
 import { normalDeviates } from '../numerics/random.js';
 import { type PathDisorder, PathSum } from '../spectrum/index.js';
-import { type CoordinatePrecision, distanceSd, isMetal } from '../structure/index.js';
+import { type CoordinatePrecision, distanceSd } from '../structure/index.js';
 import type { SiteSignal } from './site-signal.js';
 import type { Bands, PredictOptions } from './types.js';
-
-const E0_SD = 4;
-const LN_S02_SD = 0.13;
-const LN_THERMAL_SD = 0.45;
-const EXTRA_STATIC = 0.0015;
-const LENGTH_SD = 0.003;
-const LENGTH_SD_NITROGEN = 0.004;
+import { classOf, ENERGY_ORIGIN, EXTRA_STATIC, LN_AMPLITUDE, LN_THERMAL_SD, lengthSd, PATH_CLASSES, radialPulls } from './unknowns.js';
 
 const DRAWS = 200;
 const SEED = 1;
@@ -51,10 +34,10 @@ export function priorBands(sites: readonly BandSite[], precision: CoordinatePrec
     const chi = new Float64Array(k.length);
     // 5 is coprime to 24: every stratum is used alike, in no order that follows the other draws.
     const stratum = (draw * 5) % STRATA;
-    const s02 = options.s02 * Math.exp(LN_S02_SD * normal());
-    const thermal = CLASSES.map(() => Math.exp(LN_THERMAL_SD * normal()));
-    const extra = CLASSES.map(() => EXTRA_STATIC * Math.abs(normal()));
-    const length = CLASSES.map(() => normal());
+    const s02 = options.s02 * Math.exp(LN_AMPLITUDE.sd * normal());
+    const thermal = PATH_CLASSES.map(() => Math.exp(LN_THERMAL_SD * normal()));
+    const extra = PATH_CLASSES.map(() => EXTRA_STATIC * Math.abs(normal()));
+    const length = PATH_CLASSES.map(() => normal());
     for (const { sums, parts, disorder, signal } of prepared) {
       const moved = parts.scatterers.map((sd) => sd * normal());
       const drawn = disorder.map(({ sigma2, c3 }, j): PathDisorder => {
@@ -71,8 +54,6 @@ export function priorBands(sites: readonly BandSite[], precision: CoordinatePrec
   return { k, ...quantiles(draws, k.length) };
 }
 
-const CLASSES = ['nearest', 'metal', 'beyond', 'multiple'] as const;
-
 /** Signals on the band's grid for the mean energy origin of each stratum; strata from a sorted sample, good to 1 % of the spread. */
 function sumsByStratum({ signals, wave, table }: SiteSignal, k: Float64Array, e0: number): PathSum[] {
   const normal = normalDeviates(SEED + 1);
@@ -80,12 +61,12 @@ function sumsByStratum({ signals, wave, table }: SiteSignal, k: Float64Array, e0
   return Array.from({ length: STRATA }, (_, i) => {
     const stratum = sample.subarray(i * PER_STRATUM, (i + 1) * PER_STRATUM);
     const mean = stratum.reduce((sum, value) => sum + value, 0) / PER_STRATUM;
-    return new PathSum(signals, wave, k, e0 + E0_SD * mean, table.k[0]!);
+    return new PathSum(signals, wave, k, e0 + ENERGY_ORIGIN.sd * mean, table.k[0]!);
   });
 }
 
 interface PathPart {
-  /** Index into CLASSES. */
+  /** Index into PATH_CLASSES. */
   readonly kind: number;
   /** Å */
   readonly lengthSd: number;
@@ -105,27 +86,18 @@ function partsOf({ signal, isNearest }: BandSite, precision: CoordinatePrecision
   }
   const parts = paths.map(({ vertices, legs, halfLength }, j): PathPart => {
     const elements = vertices.slice(1).map((vertex) => site.atoms[vertex]!.element);
-    const kind = legs > 2 ? 3 : isNearest[j] ? 0 : isMetal(elements[0]!) ? 1 : 2;
-    const lengthSd = halfLength * (elements.includes('N') ? LENGTH_SD_NITROGEN : LENGTH_SD);
-    const pulls = vertices.flatMap((vertex, i) => {
-      const scatterer = scattererOf.get(vertex);
-      if (vertex === 0 || scatterer === undefined) return [];
-      const [before, here, after] = [vertices[i - 1]!, vertex, vertices[(i + 1) % vertices.length]!].map((v) => site.atoms[v]!.position);
-      const outward = direction(absorber!.position, here!);
-      return [{ scatterer, pull: 0.5 * (dot(direction(before!, here!), outward) - dot(direction(here!, after!), outward)) }];
+    const pulls = radialPulls(site, vertices).flatMap(({ atom, pull }) => {
+      const scatterer = scattererOf.get(atom);
+      return scatterer === undefined ? [] : [{ scatterer, pull }];
     });
-    return { kind, lengthSd, pulls };
+    return {
+      kind: PATH_CLASSES.indexOf(classOf(legs, isNearest[j]!, elements[0]!)),
+      lengthSd: lengthSd(halfLength, elements),
+      pulls,
+    };
   });
   return { scatterers, paths: parts };
 }
-
-function direction(from: readonly number[], to: readonly number[]): readonly number[] {
-  const d = to.map((x, i) => x - from[i]!);
-  const length = Math.hypot(...d);
-  return d.map((x) => x / length);
-}
-
-const dot = (a: readonly number[], b: readonly number[]): number => a.reduce((sum, x, i) => sum + x * b[i]!, 0);
 
 function quantiles(draws: readonly Float64Array[], n: number): Omit<Bands, 'k'> {
   const room = () => new Float64Array(n);

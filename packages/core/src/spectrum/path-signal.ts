@@ -26,6 +26,11 @@ export class InterstitialWave {
     return this.re.at(k);
   }
 
+  /** d Re p/dk, no unit. */
+  realSlope(k: number): number {
+    return this.re.slopeAt(k);
+  }
+
   /** Mean free path λ = 1/Im p, Å: the amplitude of a path falls as e^{−2R/λ}. */
   meanFreePath(k: number): number {
     return 1 / this.im.at(k);
@@ -68,6 +73,26 @@ export class PathSignal {
       const s = Math.sin(phase);
       re[i] = b * c - d * s;
       im[i] = b * s + d * c;
+    }
+  }
+
+  /** As `evaluate`, and dA/dk into dRe, dIm (n). */
+  evaluateWithSlope(k: Float64Array, re: Float64Array, im: Float64Array, dRe: Float64Array, dIm: Float64Array): void {
+    const R = this.path.halfLength;
+    for (let i = 0; i < k.length; i++) {
+      const ki = k[i]!;
+      const b = this.bRe.at(ki);
+      const d = this.bIm.at(ki);
+      const phase = 2 * this.wave.real(ki) * R;
+      const rate = 2 * this.wave.realSlope(ki) * R;
+      const db = this.bRe.slopeAt(ki) - rate * d;
+      const dd = this.bIm.slopeAt(ki) + rate * b;
+      const c = Math.cos(phase);
+      const s = Math.sin(phase);
+      re[i] = b * c - d * s;
+      im[i] = b * s + d * c;
+      dRe[i] = db * c - dd * s;
+      dIm[i] = db * s + dd * c;
     }
   }
 
