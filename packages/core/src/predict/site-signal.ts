@@ -30,11 +30,8 @@ import type { Site } from '../structure/types.js';
  */
 const PATH_THRESHOLD = 0.003;
 
-export interface SiteSignal {
+export interface SiteSignal extends SiteScattering {
   readonly site: Site;
-  readonly potential: MuffinTin;
-  readonly table: ScatteringTable;
-  readonly wave: InterstitialWave;
   readonly paths: readonly Path[];
   readonly signals: readonly PathSignal[];
   /** Bound on the share of the signal left out with weak multiple-scattering paths, and their number. */
@@ -62,28 +59,35 @@ export interface StageClock {
   paths: number;
 }
 
+/** What scattering from one kind of surroundings needs before any path is known: good for every geometry near the one it came from. */
+export interface SiteScattering {
+  readonly potential: MuffinTin;
+  readonly table: ScatteringTable;
+  readonly wave: InterstitialWave;
+  /** For each atom of the site the sphere it scatters with, −1 for none. */
+  readonly kindOfAtom: Int32Array;
+}
+
 /**
  * @param site  its cluster must reach OVERLAP_RADIUS beyond the longest path
  * @throws {InputError} no core level for the edge, or an atom without neighbours
  * @throws {CancelledError} asked to stop
  */
-export function siteSignal(
+export function siteSignal(site: Site, options: SiteSignalOptions, clock: StageClock, running?: Running): SiteSignal {
+  return pathSignals(site, siteScattering(site, options, clock, running), options, clock, running);
+}
+
+/** Atoms, potential and phase shifts of a site; throws as `siteSignal`. */
+export function siteScattering(
   site: Site,
-  { edge, selfEnergy, radius, maxLegs, kMax }: SiteSignalOptions,
+  { edge, selfEnergy, radius, kMax }: SiteSignalOptions,
   clock: StageClock,
   running?: Running,
-): SiteSignal {
+): SiteScattering {
   const numberOf = (element: string): number => elementBySymbol(element).Z;
   const absorber = numberOf(site.element);
   const width = hartreeFromEv(coreWidthEv(absorber, edge));
-
-  let last = clock.now();
-  const lap = (stage: 'atoms' | 'potentials' | 'phases' | 'paths'): void => {
-    const now = clock.now();
-    clock[stage] += now - last;
-    last = now;
-  };
-
+  const lap = laps(clock);
   const kinds = scattererKinds(site, radius);
   const atoms = kinds.representatives.map((index, kind) => freeAtom(numberOf(site.atoms[index]!.element), kind === 0 ? edge : undefined));
   for (const { element } of site.atoms) if (element !== 'H') freeAtom(numberOf(element));
@@ -92,16 +96,27 @@ export function siteSignal(
   lap('potentials');
   const table = scatteringTable(potential, exchangeCorrelation(selfEnergy, width), edge, scatteringGrid(kMax), running);
   lap('phases');
-  const wave = new InterstitialWave(table);
-  const all = enumeratePaths({ site, kindOfAtom: kinds.kindOfAtom, radius, maxLegs }, running);
-  const { kept: paths, neglected, droppedPaths } = selectPaths(table, site, kinds.kindOfAtom, all, PATH_THRESHOLD);
+  return { potential, table, wave: new InterstitialWave(table), kindOfAtom: kinds.kindOfAtom };
+}
+
+/** The paths of a site and their amplitudes with given phase shifts; throws as `siteSignal`. */
+export function pathSignals(
+  site: Site,
+  { potential, table, wave, kindOfAtom }: SiteScattering,
+  { radius, maxLegs }: SiteSignalOptions,
+  clock: StageClock,
+  running?: Running,
+): SiteSignal {
+  const lap = laps(clock);
+  const all = enumeratePaths({ site, kindOfAtom, radius, maxLegs }, running);
+  const { kept: paths, neglected, droppedPaths } = selectPaths(table, site, kindOfAtom, all, PATH_THRESHOLD);
   const multiple = new RehrAlbers(table);
   const re = new Float64Array(table.k.length);
   const im = new Float64Array(table.k.length);
   const signals = paths.map((path, i) => {
     checkRunning(running);
     running?.onProgress?.('path amplitudes', i / paths.length);
-    const spheres = path.vertices.map((vertex) => kinds.kindOfAtom[vertex]!);
+    const spheres = path.vertices.map((vertex) => kindOfAtom[vertex]!);
     if (path.legs === 2) singleScattering(table, spheres[1]!, path.halfLength, re, im);
     else
       multiple.amplitude(
@@ -113,5 +128,17 @@ export function siteSignal(
     return new PathSignal(path, table, wave, re, im);
   });
   lap('paths');
-  return { site, potential, table, wave, paths, signals, neglected, droppedPaths };
+  return { site, potential, table, wave, kindOfAtom, paths, signals, neglected, droppedPaths };
+}
+
+type Stage = 'atoms' | 'potentials' | 'phases' | 'paths';
+
+/** Adds the time since the last call to a stage. */
+function laps(clock: StageClock): (stage: Stage) => void {
+  let last = clock.now();
+  return (stage) => {
+    const now = clock.now();
+    clock[stage] += now - last;
+    last = now;
+  };
 }
