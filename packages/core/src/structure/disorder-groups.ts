@@ -5,6 +5,7 @@
  */
 import { distance } from './cell.js';
 import type { Image, Images } from './images.js';
+import { isOriented, type LocalDisorder } from './orientations.js';
 import type { Atom, Structure } from './types.js';
 
 /** Å: closer than any two atoms that are not hydrogen; the shortest bond, N≡N, is 1.1. */
@@ -33,7 +34,7 @@ export function findDisorder(structure: Structure, images: Images): Disorder {
   const groupOf = new Int32Array(atoms.length).fill(-1);
   const keys = new Map<string, number[]>();
   atoms.forEach((atom, source) => {
-    if (atom.alternate === undefined || atom.occupancy === 0) return;
+    if (atom.alternate === undefined || atom.occupancy === 0 || isOriented(atom)) return;
     const residue = atom.residue;
     const key = residue ? `${residue.chain}|${residue.number}${residue.insertion}` : `assembly ${atom.assembly ?? ''}`;
     const members = keys.get(key);
@@ -111,7 +112,7 @@ export interface Combination {
  * @returns the combinations, their weights summing to 1 − dropped
  */
 export function combinations(
-  { groups, groupOf, labelOf }: Disorder,
+  { groups, groupOf, labelOf }: LocalDisorder,
   cluster: readonly Image[],
   near: number,
   fixed: { readonly group: number; readonly label: string } | undefined,
@@ -119,7 +120,7 @@ export function combinations(
 ): { readonly list: readonly Combination[]; readonly dropped: number } {
   const members = new Map<number, Image[]>();
   for (const image of cluster) {
-    const group = groupOf[image.source]!;
+    const group = groupOf(image);
     if (group < 0) continue;
     const list = members.get(group);
     if (list) list.push(image);
@@ -133,9 +134,7 @@ export function combinations(
       unit.groups.some((other) => {
         if (groups[other]!.labels.join() !== groups[group]!.labels.join()) return false;
         const theirs = members.get(other)!;
-        return own.some((a) =>
-          theirs.some((b) => labelOf(a.source) === labelOf(b.source) && distance(a.position, b.position) < IN_CONTACT),
-        );
+        return own.some((a) => theirs.some((b) => labelOf(a) === labelOf(b) && distance(a.position, b.position) < IN_CONTACT));
       }),
     );
     const unit = { groups: [group, ...joined.flatMap((other) => other.groups)], near: isNear || joined.some((other) => other.near) };

@@ -31,6 +31,8 @@ export class Images {
   readonly occupancy: Float64Array;
   /** Images of each atom of the file in one unit cell. */
   readonly multiplicity: Int32Array;
+  /** Images an atom in general position has in one unit cell. */
+  readonly order: number;
   private readonly grid: NeighbourGrid;
   private readonly sources: Int32Array;
   private readonly operatorOf: Uint16Array;
@@ -43,6 +45,7 @@ export class Images {
     const { atoms } = structure;
     this.isCrystal = structure.cell !== undefined;
     this.operators = this.isCrystal ? structure.operators : structure.operators.slice(0, 1);
+    this.order = this.operators.length;
     this.geometry = structure.cell ? cellGeometry(structure.cell) : UNIT_CUBE;
     this.repeats = structure.cell ? (structure.repeats ?? [true, true, true]) : [false, false, false];
     this.occupancy = Float64Array.from(atoms, (atom) => atom.occupancy);

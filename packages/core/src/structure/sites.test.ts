@@ -261,3 +261,42 @@ test('describeSites: metals first, valence of an octahedral iron, precision with
   expect(ferric.sd).toBeCloseTo((Math.sqrt(6) * 0.5 * 0.015 * Math.SQRT2) / 0.37, 2);
   expect(warnings.map(({ code }) => code)).toContain('small-molecule');
 });
+
+describe('disorder about a symmetry element (CIF groups below 0)', () => {
+  const disordered = (rows: string, operators: string) =>
+    readStructure(
+      cubic(rows, operators)
+        .replaceAll('4.2', '10')
+        .replace('_atom_site_occupancy', '_atom_site_occupancy\n_atom_site_disorder_assembly\n_atom_site_disorder_group'),
+    );
+  const list = (structure: ReturnType<typeof readStructure>, absorber: string) =>
+    findSites(structure, { absorber, radius: 4 }).map(({ weight, atoms }) => [
+      weight,
+      atoms.map(({ name, distance, occupancy }) => `${name} ${distance.toFixed(3)} ${occupancy}`).join(', '),
+    ]);
+
+  test('a ligand beside its mirror image is one ligand; ways that are mirror images are one', () => {
+    const structure = disordered(
+      'Fe1 Fe 0 0 0 1 . .\nO1 O 0.2 0 0.05 0.5 . -1\nC1 C 0.3 0.03 0.12 0.5 . -1\nN1 N -0.2 0 0 1 . .',
+      "'x,y,z'\n'x,y,-z'",
+    );
+    // |O1| = 10 √(0.2² + 0.05²), |C1| = 10 √(0.3² + 0.03² + 0.12²)
+    expect(list(structure, 'Fe')).toEqual([[1, 'Fe1 0.000 1, N1 2.000 1, O1 2.062 1, C1 3.245 1']]);
+  });
+
+  test('an absorber off the mirror sees the near and the far half of a ligand, each half of the time', () => {
+    const structure = disordered('Fe1 Fe 0 0 0.15 1 . .\nO1 O 0.2 0 0.05 0.5 . -1\nC1 C 0.3 0 0.1 0.5 . -1', "'x,y,z'\n'x,y,-z'");
+    // 10 √(0.2² + 0.1²) and 10 √(0.2² + 0.2²); the carbon goes with its oxygen: 10 √(0.3² + 0.05²) or 10 √(0.3² + 0.25²)
+    expect(list(structure, 'Fe')).toEqual([
+      [0.5, 'Fe1 0.000 1, O1 2.828 1, Fe1 3.000 1, C1 3.905 1'],
+      [0.5, 'Fe1 0.000 1, O1 2.236 1, Fe1 3.000 1, C1 3.041 1'],
+    ]);
+  });
+
+  test('two ligands at two mirrors choose apart; an absorber never meets its own image', () => {
+    const two = disordered('Fe1 Fe 0 0 0.25 1 . .\nO1 O 0 0 0.05 0.5 . -1\nS1 S 0 0 0.45 0.5 . -1', "'x,y,z'\n'x,y,-z'");
+    expect(list(two, 'Fe').map(([weight]) => weight)).toEqual([0.25, 0.25, 0.25, 0.25]);
+    const split = disordered('Cu1 Cu 0.02 0 0 0.5 . -1\nO1 O 0.2 0 0 0.5 . -1\nN1 N 0 0.2 0 1 . .', "'x,y,z'\n'-x,-y,-z'");
+    expect(list(split, 'Cu')).toEqual([[1, 'Cu1 0.000 1, O1 1.800 1, N1 2.010 1, N1 2.010 1']]);
+  });
+});

@@ -5,6 +5,7 @@ import { isMetal } from './bonding.js';
 import { distance } from './cell.js';
 import { type Combination, combinations, type Disorder, findDisorder } from './disorder-groups.js';
 import { type Image, Images } from './images.js';
+import { type LocalDisorder, localDisorder } from './orientations.js';
 import { checkSite, checkStructure } from './site-checks.js';
 import type { Atom, Site, SiteAtom, Structure } from './types.js';
 
@@ -124,12 +125,13 @@ function sitesOf(
   const centre = images.position(source);
   const around = images.around(centre, radius).filter((image) => images.occupancy[image.source]! > 0);
   const own = around.find((image) => image.source === source && image.distance < 1e-6)!;
-  const group = disorder.groupOf[source]!;
+  const local = localDisorder(disorder, atoms, images, around);
+  const group = local.groupOf(own);
   const isLabelled = group >= 0 && absorber.alternate !== undefined;
-  const fixed = isLabelled ? { group, label: disorder.labelOf(source) } : undefined;
+  const fixed = isLabelled ? { group, label: local.labelOf(own) } : undefined;
   // On the absorber's own spot sits whoever replaces it elsewhere; that one is no choice.
   const others = around.filter((image) => image !== own && !sharesSpot(image, own, images));
-  const { list, dropped } = combinations(disorder, isLabelled ? [own, ...others] : others, variantRadius, fixed, maxVariants);
+  const { list, dropped } = combinations(local, isLabelled ? [own, ...others] : others, variantRadius, fixed, maxVariants);
   const density = images.density(atoms);
   const isWhole = !images.isCrystal && around.length === atoms.reduce((n, _, i) => n + Number(images.occupancy[i]! > 0), 0);
   const diagnostics = [...shared];
@@ -141,9 +143,9 @@ function sitesOf(
   }
   return list.map((combination) => {
     const said: Diagnostic[] = [];
-    const neighbours = pickAtoms(structure, others, own, combination, disorder, images, said);
+    const neighbours = pickAtoms(structure, others, own, combination, local, images, said);
     const self: SiteAtom = {
-      ...siteAtom(absorber, own, occupancyOf(source, disorder, images, fixed !== undefined)),
+      ...siteAtom(absorber, own, occupancyOf(own, local, images, fixed !== undefined)),
       symmetry: 'x,y,z',
       distance: 0,
     };
@@ -168,16 +170,16 @@ function pickAtoms(
   around: readonly Image[],
   own: Image,
   { labels }: Combination,
-  disorder: Disorder,
+  local: LocalDisorder,
   images: Images,
   diagnostics: Diagnostic[],
 ): SiteAtom[] {
   const { atoms } = structure;
   const chosen: SiteAtom[] = [];
   for (const image of around) {
-    const group = disorder.groupOf[image.source]!;
-    if (group >= 0 && labels.get(group) !== disorder.labelOf(image.source)) continue;
-    chosen.push(siteAtom(atoms[image.source]!, image, occupancyOf(image.source, disorder, images, group >= 0)));
+    const group = local.groupOf(image);
+    if (group >= 0 && labels.get(group) !== local.labelOf(image)) continue;
+    chosen.push(siteAtom(atoms[image.source]!, image, occupancyOf(image, local, images, group >= 0)));
   }
   const absorber = siteAtom(atoms[own.source]!, own, 1);
   return resolveOverlaps(structure, absorber, sortAtoms(chosen), diagnostics);
@@ -188,9 +190,9 @@ const sharesSpot = (image: Image, own: Image, { occupancy }: Images): boolean =>
   occupancy[own.source]! < 1 && image.distance < 0.8 && occupancy[image.source]! + occupancy[own.source]! <= 1.05;
 
 /** A chosen alternate stands for its whole group: 0.6 of A and 0.4 of B are, in variant A, an atom fully there. */
-function occupancyOf(source: number, { groups, groupOf }: Disorder, images: Images, isChosen: boolean): number {
-  const group = groupOf[source]!;
-  if (!isChosen || group < 0) return images.occupancy[source]!;
+function occupancyOf(image: Image, { groups, groupOf }: LocalDisorder, images: Images, isChosen: boolean): number {
+  const group = groupOf(image);
+  if (!isChosen || group < 0) return images.occupancy[image.source]!;
   return Math.min(
     1,
     groups[group]!.weights.reduce((sum, weight) => sum + weight, 0),
@@ -275,7 +277,7 @@ function mergeEquivalent(sites: readonly Site[]): Site[] {
   const kept: { site: Site; weight: number; count: number; print: Float64Array; elements: string }[] = [];
   for (const site of sites) {
     const { print, elements } = fingerprint(site);
-    const twin = site.variant === undefined ? kept.find((other) => other.elements === elements && isNear(other.print, print)) : undefined;
+    const twin = kept.find((other) => other.elements === elements && mayMerge(other.site, site) && isNear(other.print, print));
     if (twin) {
       twin.weight += site.weight;
       twin.count++;
@@ -289,11 +291,20 @@ function mergeEquivalent(sites: readonly Site[]): Site[] {
           weight,
           diagnostics: [
             ...site.diagnostics,
-            { code: 'equivalent-sites', message: `${site.label} stands for ${count} listed atoms with the same surroundings` },
+            site.variant === undefined
+              ? { code: 'equivalent-sites', message: `${site.label} stands for ${count} listed atoms with the same surroundings` }
+              : {
+                  code: 'equivalent-variants',
+                  message: `${site.label}: ${count} ways its surroundings can be are alike by symmetry and one`,
+                },
           ],
         },
   );
 }
+
+/** Atoms listed apart, or ways the surroundings of one atom can be: mirror images, of a group disordered about a symmetry element. */
+const mayMerge = (a: Site, b: Site): boolean =>
+  b.variant === undefined ? a.variant === undefined : a.variant !== undefined && a.label === b.label;
 
 function fingerprint(site: Site): { print: Float64Array; elements: string } {
   const near = site.atoms.slice(1, 25);
