@@ -1,4 +1,5 @@
 /** judgement: from prediction and evidence to a finding. Å, Å⁻¹, Å², eV, K. */
+export { type Candidate, type JudgeContext, judge } from './judge.js';
 export type {
   Band,
   CandidateJudgement,

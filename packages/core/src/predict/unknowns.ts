@@ -4,7 +4,8 @@
  *
  * | unknown                                            | expected                                | origin |
  * |----------------------------------------------------|-----------------------------------------|--------|
- * | energy origin above the measured inflection        | Normal(3, 4 eV)                         | k = 0 is conventional; standards gave 0 to 8 eV |
+ * | energy origin above the measured inflection        | Normal(3, 4 eV); where that sits on a   | k = 0 is conventional; metals gave 0 to 8 eV, compounds |
+ * |                                                    | white line or is not known, (0, 6 eV)   | anywhere within 10 eV on a white line |
  * | ln S0²                                             | Normal(ln 0.82, 0.13)                   | passive electrons, edge step |
  * | ln thermal scale, per class of path                | Normal(0, 0.45)                         | common practice: predicted thermal factors are off by 30 to 140 % |
  * | extra static σ², per class                         | half-Normal(0.0015 Å²)                  | the structure is one average, the sample an ensemble |
@@ -16,7 +17,13 @@
 import { isMetal } from '../structure/index.js';
 import type { Site, Vec3 } from '../structure/types.js';
 
-export const ENERGY_ORIGIN = { mean: 3, sd: 4 } as const;
+/** eV */
+export interface EnergyOrigin {
+  readonly mean: number;
+  readonly sd: number;
+}
+export const ENERGY_ORIGIN: EnergyOrigin = { mean: 3, sd: 4 };
+export const ENERGY_ORIGIN_UNSURE: EnergyOrigin = { mean: 0, sd: 6 };
 export const LN_AMPLITUDE = { mean: Math.log(0.82), sd: 0.13 } as const;
 export const LN_THERMAL_SD = 0.45;
 /** Scale of the half-normal, Å². */

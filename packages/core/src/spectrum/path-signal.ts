@@ -35,6 +35,15 @@ export class InterstitialWave {
   meanFreePath(k: number): number {
     return 1 / this.im.at(k);
   }
+
+  /** Im p = 1/λ, Å⁻¹, and its slope by k: what derivatives want. */
+  inverseMeanFreePath(k: number): number {
+    return this.im.at(k);
+  }
+
+  inverseMeanFreePathSlope(k: number): number {
+    return this.im.slopeAt(k);
+  }
 }
 
 export class PathSignal {

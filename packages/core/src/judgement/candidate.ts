@@ -1,0 +1,194 @@
+/** One candidate against all data sets. */
+import type { Running } from '../errors.js';
+import { chiSquaredAbove } from '../numerics/chi-squared.js';
+import type { StageClock } from '../predict/site-signal.js';
+import { informationContent } from '../spectrum/index.js';
+import type { Structure } from '../structure/types.js';
+import { bandsOf, comparisonOf, type Draw, priorDraw, rFactorOf } from './comparison.js';
+import { assumptionsOf, disorderRows, distinctAbsorbers } from './describe.js';
+import { CAUTION, CONSISTENT, cannotTell, findingSentence, findingWord, strainedOf, wouldChange } from './finding.js';
+import { type Minimum, minimise } from './minimise.js';
+import { describeClass, overlength } from './overlength.js';
+import { freeShift } from './parameters.js';
+import { logEvidence, powerAgainst } from './posterior.js';
+import { type Posterior, posteriorOf } from './posterior-shape.js';
+import { rivalsOf } from './rivals.js';
+import { prepareTrial, type SpectrumRequest, type Trial } from './trial.js';
+import { type TrialModel, trialModel } from './trial-model.js';
+import type { CandidateJudgement, Comparison, FittedParameter, JudgeOptions, RivalResult } from './types.js';
+import { valencesOf } from './valence.js';
+
+export interface Settings {
+  readonly options: JudgeOptions;
+  readonly modelError: number;
+  /** Factor of the extra static disorder's prior. */
+  readonly spread: number;
+}
+
+/** Å: the error of the first shell whose discovery is asked for. */
+const PROBE = 0.1;
+/** Starts of the energy origin, in standard deviations of its prior: k shifts enough between them to fall into another minimum. */
+const ORIGIN_STARTS = [0, -1.5, 1.5];
+const ROUGH = 6;
+
+/** @throws {InputError} the candidate lacks the absorber, or its atoms coincide */
+export function judgeCandidate(
+  file: string,
+  structure: Structure,
+  requests: readonly SpectrumRequest[],
+  { options, spread, modelError }: Settings,
+  clock: StageClock & { prediction: number; rivals: number },
+  running?: Running,
+): CandidateJudgement {
+  const begun = clock.now();
+  running?.onProgress?.(`predicting ${file}`, 0);
+  const trial = prepareTrial(structure, requests, options, clock, running);
+  clock.prediction += clock.now() - begun;
+  const model = trialModel(trial.spectra, spread);
+  const modes = bestPoints(model, running);
+  const best = modes[0]!;
+  const degrees = requests.reduce((sum, { vector }) => sum + vector.independentPoints, 0);
+  const posterior = posteriorOf(model, modes, options.sampling ?? 'auto', trial, running);
+  const parameters = describeParameters(model, best, posterior);
+  const comparisons = requests.map(({ vector, file: data }, s) => comparisonOf(vector, model, s, best.z, data));
+  const numbers = {
+    x: best.x,
+    independentPoints: degrees,
+    p: chiSquaredAbove(best.x, degrees),
+    rFactor: jointRFactor(comparisons, requests),
+    power: powerOfProbe(trial, model, best, spread, degrees),
+  };
+  const strained = strainedOf(parameters);
+  const finding = findingWord(numbers.p, numbers.power, strained);
+  const stretched = overlength(trial, model, best, spread);
+  const evidence = logEvidence(best, model.bounded);
+  const beforeRivals = clock.now();
+  const rivals = options.rivals ? judgeRivals(trial, spread, degrees, evidence, clock, running) : [];
+  clock.rivals += clock.now() - beforeRivals;
+  const kMax = Math.max(...requests.map(({ vector }) => vector.window.kRange[1]));
+  const elements = [
+    ...new Set(
+      trial.spectra.flatMap(({ sites }) =>
+        sites.flatMap(({ signal }) => signal.paths.map(({ vertices }) => signal.site.atoms[vertices[1]!]!.element)),
+      ),
+    ),
+  ];
+  const resolution = Math.min(...requests.map(({ vector }) => informationContent(vector.window.kRange, vector.window.rRange).resolution));
+  return {
+    file,
+    title: structure.title,
+    finding,
+    sentence: findingSentence(file, finding, numbers, strained),
+    x: best.x,
+    xData: best.xData,
+    xPrior: best.xPrior,
+    independentPoints: degrees,
+    p: numbers.p,
+    rFactor: numbers.rFactor,
+    power: numbers.power,
+    parameters,
+    strained,
+    overlength: stretched,
+    valence: distinctAbsorbers(trial).flatMap((spectrum) => {
+      const { label } = describeClass(spectrum, 'nearest');
+      return valencesOf(spectrum, stretched.shells.find((shell) => shell.label === label)?.deltaR ?? 0);
+    }),
+    disorder: disorderRows(trial, model, best),
+    rivals,
+    notExcluded: rivals.filter(({ excluded }) => !excluded).map(({ label }) => label),
+    logEvidence: evidence,
+    posterior: { method: posterior.method, reason: posterior.reason },
+    comparisons:
+      options.bands === false
+        ? comparisons
+        : comparisons.map((comparison, s) => withBands(comparison, requests[s]!, model, s, posterior.draw)),
+    assumptions: assumptionsOf(trial, options, spread, modelError),
+    wouldChange: wouldChange(finding, numbers, stretched, kMax),
+    cannotTell: cannotTell(elements, degrees, model.parameters, resolution),
+    caution: CAUTION,
+    warnings: trial.warnings,
+  };
+}
+
+/** Local minima from several energy origins, the best first, alike ones once. */
+function bestPoints(model: TrialModel, running?: Running): Minimum[] {
+  const origins = model.list.flatMap(({ name }, p) => (name === 'energy-origin' ? [p] : []));
+  const found: Minimum[] = [];
+  for (const start of ORIGIN_STARTS) {
+    const z = new Float64Array(model.parameters);
+    for (const p of origins) z[p] = start;
+    if (start === 0) found.push(minimise(model, z, undefined, running));
+    else {
+      const rough = minimise(model, z, ROUGH, running);
+      const isNew = found.every((known) => origins.some((p) => Math.abs(known.z[p]! - rough.z[p]!) > 0.3));
+      if (isNew && rough.x < found[0]!.x + 30) found.push(minimise(model, rough.z, undefined, running));
+    }
+  }
+  found.sort((a, b) => a.x - b.x);
+  return found.filter((one, i) => found.slice(0, i).every((other) => origins.some((p) => Math.abs(other.z[p]! - one.z[p]!) > 0.1)));
+}
+
+function describeParameters({ list }: TrialModel, { z }: Minimum, { sd }: Posterior): FittedParameter[] {
+  return list.map(({ name, shell, unit, mean, sd: priorSd, value, slope }, p) => ({
+    name,
+    shell,
+    unit,
+    prior: { mean, sd: priorSd },
+    value: value(z[p]!),
+    sd: Math.abs(slope(z[p]!)) * sd[p]!,
+    strain: z[p]!,
+  }));
+}
+
+/** Power against a first shell that is off by PROBE either way, the smaller of the two. */
+function powerOfProbe(trial: Trial, held: TrialModel, best: Minimum, spread: number, degrees: number): number {
+  const model = trialModel(trial.spectra, spread, 'classes');
+  const z = new Float64Array(model.parameters);
+  model.list.forEach(({ key }, p) => {
+    const known = held.indexOf(key);
+    if (known !== undefined) z[p] = best.z[known]!;
+  });
+  const reference = new Float64Array(model.size);
+  model.evaluate(z, reference);
+  const elements = new Set(trial.spectra.map(({ element }) => element));
+  return Math.min(
+    ...[-PROBE, PROBE].map((shift) => {
+      const moved = Float64Array.from(z);
+      for (const element of elements) {
+        const { key, sd } = freeShift(element, 'nearest');
+        const p = model.indexOf(key);
+        if (p !== undefined) moved[p] = shift / sd;
+      }
+      const change = new Float64Array(model.size);
+      model.evaluate(moved, change);
+      return powerAgainst(
+        change.map((value, i) => value - reference[i]!),
+        best,
+        degrees,
+      );
+    }),
+  );
+}
+
+function judgeRivals(trial: Trial, spread: number, degrees: number, evidence: number, clock: StageClock, running?: Running): RivalResult[] {
+  const results: RivalResult[] = [];
+  for (const { label, kind, spectra } of rivalsOf(trial, clock, running)) {
+    running?.onProgress?.(`rival: ${label}`, 0);
+    const model = trialModel(spectra, spread);
+    const [best] = bestPoints(model, running);
+    const p = chiSquaredAbove(best!.x, degrees);
+    results.push({ label, kind, x: best!.x, p, logEvidence: logEvidence(best!, model.bounded) - evidence, excluded: p < CONSISTENT });
+  }
+  return results.sort((a, b) => b.logEvidence - a.logEvidence);
+}
+
+function jointRFactor(comparisons: readonly Comparison[], requests: readonly SpectrumRequest[]): number {
+  const parts = comparisons.map((comparison, s) => rFactorOf(comparison, requests[s]!.vector.window.rRange));
+  return parts.reduce((sum, { misfit }) => sum + misfit, 0) / parts.reduce((sum, { power }) => sum + power, 0);
+}
+
+function withBands(comparison: Comparison, { vector }: SpectrumRequest, model: TrialModel, s: number, draw: Draw): Comparison {
+  const prior = bandsOf(vector, model, s, priorDraw(model));
+  const posterior = bandsOf(vector, model, s, draw);
+  return { ...comparison, bands: { priorK: prior.k, posteriorK: posterior.k, priorR: prior.R, posteriorR: posterior.R } };
+}

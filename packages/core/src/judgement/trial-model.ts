@@ -1,0 +1,151 @@
+/**
+ * A trial as residuals of its parameters: which unknown moves which path by how much, and the whitened misfit of all spectra
+ * together. Free distances are an option, for the refits.
+ */
+import { classOf, lengthSd, type PathClass, radialPulls } from '../predict/unknowns.js';
+import { project } from './data-vector.js';
+import type { ResidualModel } from './minimise.js';
+import {
+  amplitude,
+  classShift,
+  energyOrigin,
+  extraStatic,
+  freeShift,
+  freeStretch,
+  type Parameter,
+  ParameterList,
+  scattererShift,
+  thermalScale,
+} from './parameters.js';
+import { type ParameterValues, SiteTerms, type SiteUnknowns } from './site-terms.js';
+import type { TrialSite, TrialSpectrum } from './trial.js';
+
+/** Which distances are let go: none, all by one factor, or each shell class by a shift of its own. */
+export type Freedom = 'none' | 'stretch' | 'classes';
+
+export interface TrialModel extends ResidualModel {
+  readonly list: readonly Parameter[];
+  readonly indexOf: (key: string) => number | undefined;
+  /** χ(k) of spectrum s at z, as the theory gives it, into out (nk). */
+  chi(s: number, z: Float64Array, out: Float64Array): Float64Array;
+}
+
+/** @param spread  factor of the extra static disorder's prior by kind of sample */
+export function trialModel(spectra: readonly TrialSpectrum[], spread: number, freedom: Freedom = 'none'): TrialModel {
+  const parameters = new ParameterList();
+  const sets = spectra.map((spectrum, s) => ({
+    vector: spectrum.vector,
+    offset: spectra.slice(0, s).reduce((sum, { vector }) => sum + vector.size, 0),
+    terms: spectrum.sites.map(
+      (site) =>
+        new SiteTerms(site.signal, spectrum.vector.k, site.sigma2, site.c3, unknownsOf(parameters, spectrum, s, site, spread, freedom)),
+    ),
+    chi: new Float64Array(spectrum.vector.k.length),
+    projected: new Float64Array(spectrum.vector.size),
+  }));
+  const { list } = parameters;
+  const P = list.length;
+  const size = sets.reduce((sum, { vector }) => sum + vector.size, 0);
+  const slopes = new Float64Array(P * Math.max(...sets.map(({ vector }) => vector.k.length)));
+  const values: ParameterValues & { z: Float64Array } = { z: new Float64Array(P), value: new Float64Array(P), slope: new Float64Array(P) };
+  const load = (z: Float64Array): void => {
+    values.z = z;
+    for (let p = 0; p < P; p++) {
+      values.value[p] = list[p]!.value(z[p]!);
+      values.slope[p] = list[p]!.slope(z[p]!);
+    }
+  };
+  return {
+    list,
+    size,
+    parameters: P,
+    bounded: list.map(({ isHalfNormal }) => isHalfNormal),
+    indexOf: (key) => parameters.find(key),
+    chi(s, z, out) {
+      load(z);
+      out.fill(0);
+      for (const site of sets[s]!.terms) site.addTo(out, values);
+      return out;
+    },
+    evaluate(z, residuals, jacobian) {
+      load(z);
+      jacobian?.fill(0);
+      for (const { vector, offset, terms, chi, projected } of sets) {
+        const nk = vector.k.length;
+        const slope = jacobian && slopes.subarray(0, P * nk).fill(0);
+        chi.fill(0);
+        for (const site of terms) site.addTo(chi, values, slope);
+        project(vector, chi, projected);
+        for (let i = 0; i < vector.size; i++) residuals[offset + i] = vector.data[i]! - projected[i]!;
+        if (!jacobian || !slope) continue;
+        for (let p = 0; p < P; p++) {
+          project(vector, slope.subarray(p * nk, (p + 1) * nk), projected);
+          for (let i = 0; i < vector.size; i++) jacobian[p * size + offset + i] = -projected[i]!;
+        }
+      }
+    },
+  };
+}
+
+/** Registers the unknowns of one site and says how each acts on its paths. */
+function unknownsOf(
+  parameters: ParameterList,
+  { element, edge, energyOrigin: expected }: TrialSpectrum,
+  s: number,
+  site: TrialSite,
+  spread: number,
+  freedom: Freedom,
+): SiteUnknowns {
+  const { signal, nearest } = site;
+  const { paths } = signal;
+  const { atoms, label } = signal.site;
+  const origin = parameters.add(energyOrigin(element, edge, expected));
+  const size = parameters.add(amplitude(s, `spectrum ${s + 1}`));
+  const thermal = new Int32Array(paths.length);
+  const extra = new Int32Array(paths.length);
+  const start = new Int32Array(paths.length + 1);
+  const shifts: { parameter: number; coefficient: number }[] = [];
+
+  // alike scatterers move as one; each has the parameter of its distance, whichever of the two atoms absorbs
+  const scatterers = new Map<number, number>();
+  for (const { legs, members } of paths) {
+    if (legs !== 2) continue;
+    const first = members[0]![1]!;
+    const sd = site.distanceSd(first);
+    if (!(sd > 0)) continue;
+    const { source, distance, name } = atoms[first]!;
+    const pair = [atoms[0]!.source, source].sort((a, b) => a - b).join('-');
+    const words = `${name} at ${distance.toFixed(2)} Å from ${label}`;
+    const parameter = parameters.add(scattererShift(`${pair} ${distance.toFixed(3)}`, words, sd));
+    for (const [, atom] of members) scatterers.set(atom!, parameter);
+  }
+  const stretch = freedom === 'stretch' ? parameters.add(freeStretch()) : -1;
+
+  const kindOfAtom = (atom: number): PathClass => classOf(2, nearest.has(atom), atoms[atom]!.element);
+  paths.forEach(({ vertices, legs, halfLength }, j) => {
+    const elements = vertices.slice(1).map((vertex) => atoms[vertex]!.element);
+    const kind = classOf(legs, nearest.has(vertices[1]!), elements[0]!);
+    thermal[j] = parameters.add(thermalScale(element, kind));
+    extra[j] = parameters.add(extraStatic(element, kind, spread));
+    shifts.push({ parameter: parameters.add(classShift(element, kind)), coefficient: lengthSd(halfLength, elements) });
+    if (stretch >= 0) shifts.push({ parameter: stretch, coefficient: halfLength * parameters.list[stretch]!.sd });
+    for (const { atom, pull } of radialPulls(signal.site, vertices)) {
+      if (pull === 0) continue;
+      const own = scatterers.get(atom);
+      if (own !== undefined) shifts.push({ parameter: own, coefficient: pull * parameters.list[own]!.sd });
+      if (freedom !== 'classes') continue;
+      const free = parameters.add(freeShift(element, kindOfAtom(atom)));
+      shifts.push({ parameter: free, coefficient: pull * parameters.list[free]!.sd });
+    }
+    start[j + 1] = shifts.length;
+  });
+  return {
+    energyOrigin: origin,
+    amplitude: size,
+    thermalScale: thermal,
+    extraStatic: extra,
+    shiftStart: start,
+    shiftParameter: Int32Array.from(shifts, ({ parameter }) => parameter),
+    shiftCoefficient: Float64Array.from(shifts, ({ coefficient }) => coefficient),
+  };
+}
