@@ -6,7 +6,7 @@ import { informationContent } from '../spectrum/index.js';
 import type { Structure } from '../structure/types.js';
 import { bandsOf, comparisonOf, type Draw, priorDraw, rFactorOf } from './comparison.js';
 import { assumptionsOf, disorderRows, distinctAbsorbers } from './describe.js';
-import { CAUTION, CONSISTENT, cannotTell, findingSentence, findingWord, strainedOf, wouldChange } from './finding.js';
+import { CAUTION, CONSISTENT, cannotTell, distancesProbability, findingSentence, findingWord, strainedOf, wouldChange } from './finding.js';
 import { type Minimum, minimise } from './minimise.js';
 import { describeClass, overlength } from './overlength.js';
 import { freeShift } from './parameters.js';
@@ -51,16 +51,17 @@ export function judgeCandidate(
   const posterior = posteriorOf(model, modes, options.sampling ?? 'auto', trial, running);
   const parameters = describeParameters(model, best, posterior);
   const comparisons = requests.map(({ vector, file: data }, s) => comparisonOf(vector, model, s, best.z, data));
+  const stretched = overlength(trial, model, best, spread);
   const numbers = {
     x: best.x,
     independentPoints: degrees,
     p: chiSquaredAbove(best.x, degrees),
+    pDistances: distancesProbability(stretched),
     rFactor: jointRFactor(comparisons, requests),
     power: powerOfProbe(trial, model, best, spread, degrees),
   };
   const strained = strainedOf(parameters);
-  const finding = findingWord(numbers.p, numbers.power, strained);
-  const stretched = overlength(trial, model, best, spread);
+  const finding = findingWord(numbers.p, numbers.pDistances, numbers.power, strained);
   const evidence = logEvidence(best, model.bounded);
   const beforeRivals = clock.now();
   const rivals = options.rivals ? judgeRivals(trial, spread, degrees, evidence, clock, running) : [];
@@ -84,6 +85,7 @@ export function judgeCandidate(
     xPrior: best.xPrior,
     independentPoints: degrees,
     p: numbers.p,
+    pDistances: numbers.pDistances,
     rFactor: numbers.rFactor,
     power: numbers.power,
     parameters,

@@ -1,39 +1,42 @@
 /** What a judgement says beside its numbers: disorder by shell, and what was assumed. */
-import { classOf, type PathClass } from '../predict/unknowns.js';
+import { distanceResolution, groupShells } from '../disorder/index.js';
+import type { PathClass } from '../predict/unknowns.js';
 import type { Minimum } from './minimise.js';
-import { describeClass } from './overlength.js';
 import type { Trial, TrialSpectrum } from './trial.js';
 import type { TrialModel } from './trial-model.js';
 import type { DisorderRow, JudgeOptions } from './types.js';
 
-const ROW_CLASSES: readonly PathClass[] = ['nearest', 'metal', 'beyond'];
-
-/** Predicted disorder of each shell class, and what the data want of it, Å². */
-export function disorderRows(trial: Trial, model: TrialModel, { z }: Minimum): DisorderRow[] {
-  return trial.spectra.flatMap((spectrum) =>
-    ROW_CLASSES.flatMap((kind) => {
-      const { label, distance, count } = describeClass(spectrum, kind);
-      if (count === 0) return [];
-      let thermal = 0;
-      let spreadOfDistances = 0;
-      for (const { signal, sigma2, nearest } of spectrum.sites) {
-        signal.paths.forEach(({ legs, vertices, degeneracy, halfLength }, j) => {
-          const atom = vertices[1]!;
-          if (legs !== 2 || classOf(2, nearest.has(atom), signal.site.atoms[atom]!.element) !== kind) return;
-          const weight = (signal.site.weight * degeneracy) / count;
-          thermal += weight * sigma2[j]!;
-          spreadOfDistances += weight * (halfLength - distance) ** 2;
-        });
-      }
-      const best = (name: string): number => {
-        const p = model.indexOf(`${name} ${spectrum.element} ${kind}`)!;
-        return model.list[p]!.value(z[p]!);
-      };
-      const wanted = thermal * best('thermal-scale') + spreadOfDistances + best('extra-static');
-      const name = trial.spectra.length > 1 ? `${label} at ${spectrum.temperature} K` : label;
-      return [{ label: name, count, meanDistance: distance, thermal, static: spreadOfDistances, wanted }];
-    }),
-  );
+/** Predicted disorder of each shell, and what the data want of it, Å². Shells are like scatterers within the resolution of the data. */
+export function disorderRows({ spectra }: Trial, model: TrialModel, { z }: Minimum): DisorderRow[] {
+  return spectra.flatMap((spectrum) => {
+    const { element, temperature, vector } = spectrum;
+    const at = (name: string, kind: PathClass): number => {
+      const p = model.indexOf(`${name} ${element} ${kind}`)!;
+      return model.list[p]!.value(z[p]!);
+    };
+    const members = spectrum.sites.flatMap(({ signal, sigma2, classes }) =>
+      signal.paths.flatMap(({ legs, vertices, degeneracy, halfLength }, j) => {
+        if (legs !== 2) return [];
+        const kind = classes[vertices[1]!]!;
+        const thermal = sigma2[j]!;
+        return [
+          {
+            element: signal.site.atoms[vertices[1]!]!.element,
+            halfLength,
+            degeneracy: degeneracy * signal.site.weight,
+            thermal,
+            wanted: thermal * at('thermal-scale', kind) + at('extra-static', kind),
+          },
+        ];
+      }),
+    );
+    return groupShells(members, distanceResolution(...vector.window.kRange)).map((shell) => {
+      const wanted = shell.members.reduce((sum, m) => sum + members[m]!.degeneracy * members[m]!.wanted, 0) / shell.count;
+      const label = `${element}–${shell.element} ${shell.meanDistance.toFixed(2)} Å${spectra.length > 1 ? `, ${temperature} K` : ''}`;
+      const { thermal, static: spread } = shell.sigma2;
+      return { label, count: shell.count, meanDistance: shell.meanDistance, thermal, static: spread, wanted: wanted + spread };
+    });
+  });
 }
 
 /** Spectra of different absorbers: two temperatures of one are the same sites. */

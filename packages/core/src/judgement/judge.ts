@@ -32,6 +32,8 @@ export interface JudgeContext {
 
 /** Å⁻¹: where the default k range begins; below it theory and background are least sure. */
 const K_START = 3;
+/** Å⁻¹: how far the theory is computed at most. */
+const K_END = 20;
 /** Å: default R range, and how far it stays below the longest path, whose peak lies some 0.4 Å short of it. */
 const R_START = 1;
 const R_END = 4;
@@ -97,7 +99,8 @@ function requestOf(set: Evidence, options: JudgeOptions, modelError: number): Sp
     throw new InputError(
       `${file}: the R range ends at ${rRange[1]} Å, beyond the longest path of ${radius} Å; a larger radius or a shorter range is wanted`,
     );
-  const vector = dataVector(reduction, { kRange, rRange, kWeight: set.kWeight ?? K_WEIGHT }, modelError, file);
+  if (kRange[1] > K_END) throw new InputError(`${file}: the k range ends at ${kRange[1]} Å⁻¹; the theory is computed to ${K_END} Å⁻¹`);
+  const vector = dataVector(upTo(reduction, K_END), { kRange, rRange, kWeight: set.kWeight ?? K_WEIGHT }, modelError, file);
   return { vector, absorber, edge, temperature, file, energyOrigin: expectedOrigin(reduction) };
 }
 
@@ -118,13 +121,27 @@ function checkEdge({ reduction, file, absorber }: Evidence, edge: NonNullable<Ev
 }
 
 function defaultKRange({ k, noise }: Reduction, file: string): readonly [number, number] {
-  const end = Math.floor(Math.min(noise.kMaxUseful, k.at(-1)!) / 0.05 + 1e-6) * 0.05;
+  const end = Math.floor(Math.min(noise.kMaxUseful, k.at(-1)!, K_END) / 0.05 + 1e-6) * 0.05;
   const begin = Math.max(K_START, k[0]!);
   if (!(end - begin >= 2))
     throw new InputError(
       `${file}: oscillations stand above the noise only up to ${end.toFixed(2)} Å⁻¹; give a k range if you know better, or measure longer`,
     );
   return [begin, Number(end.toFixed(2))];
+}
+
+/** The reduction without its points beyond kMax. */
+function upTo(reduction: Reduction, kMax: number): Reduction {
+  const { k, chi, sigmaChi, background } = reduction;
+  const n = k.findLastIndex((value) => value <= kMax + 1e-9) + 1;
+  if (n === k.length) return reduction;
+  return {
+    ...reduction,
+    k: k.slice(0, n),
+    chi: chi.slice(0, n),
+    sigmaChi: sigmaChi.slice(0, n),
+    background: { ...background, kMax: Math.min(background.kMax, kMax) },
+  };
 }
 
 /** Unsure where chi(k) came ready, since its origin is that of whoever made it, and where the steepest rise sits on a white line. */

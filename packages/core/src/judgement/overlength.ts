@@ -3,7 +3,7 @@
  * The scatterers' own shifts (coordinates) and the classes' (theory) stay in the fit with their priors, so that the posterior width
  * of a free distance is data, coordinates and theory together: s² = s_fit² + s_coord² + s_theory². Å.
  */
-import { classOf, type PathClass } from '../predict/unknowns.js';
+import type { PathClass } from '../predict/unknowns.js';
 import { type Minimum, minimise } from './minimise.js';
 import { covarianceOf } from './posterior.js';
 import type { Trial, TrialSpectrum } from './trial.js';
@@ -20,8 +20,9 @@ const BLIND = 0.25;
 /** Starts of the refits: the phase 2kR folds at about 0.15 Å. */
 const STRETCH_STARTS = [-0.06, -0.03, 0.03, 0.06];
 const SHIFT_STARTS = [-0.15, -0.1, -0.05, 0.05, 0.1, 0.15];
-/** Iterations of a rough look. */
-const ROUGH = 4;
+/** Iterations of a rough look, and how far above the known minimum it may end to be followed. */
+const ROUGH = 2;
+const PROMISING = 20;
 
 const FREE_CLASSES: readonly PathClass[] = ['nearest', 'metal', 'beyond'];
 
@@ -97,11 +98,10 @@ export function describeClass(spectrum: TrialSpectrum, kind: PathClass): { label
   const elements = new Map<string, number>();
   let count = 0;
   let sum = 0;
-  for (const { signal, nearest } of spectrum.sites) {
+  for (const { signal, classes } of spectrum.sites) {
     for (const { legs, vertices, degeneracy, halfLength } of signal.paths) {
-      if (legs !== 2) continue;
+      if (legs !== 2 || classes[vertices[1]!] !== kind) continue;
       const { element } = signal.site.atoms[vertices[1]!]!;
-      if (classOf(2, nearest.has(vertices[1]!), element) !== kind) continue;
       const weight = signal.site.weight * degeneracy;
       elements.set(element, (elements.get(element) ?? 0) + weight);
       count += weight;
@@ -126,14 +126,15 @@ function refit(trial: Trial, held: TrialModel, best: Minimum, spread: number, fr
   let minimum = minimise(model, begin);
   for (const p of free) {
     const { sd } = model.list[p]!;
-    for (const start of freedom === 'stretch' ? STRETCH_STARTS : SHIFT_STARTS) {
+    const looks = (freedom === 'stretch' ? STRETCH_STARTS : SHIFT_STARTS).map((start) => {
       const moved = Float64Array.from(minimum.z);
       moved[p] = start / sd;
-      const rough = minimise(model, moved, ROUGH);
-      if (rough.x > minimum.x + 2 && rough.x > best.x) continue;
-      const tried = minimise(model, rough.z);
-      if (tried.x < minimum.x - 1e-3) minimum = tried;
-    }
+      return minimise(model, moved, ROUGH);
+    });
+    const [likely] = looks.sort((a, b) => a.x - b.x);
+    if (likely!.x > minimum.x + PROMISING) continue;
+    const tried = minimise(model, likely!.z);
+    if (tried.x < minimum.x - 1e-3) minimum = tried;
   }
   return { model, minimum };
 }

@@ -24,6 +24,8 @@ const SEVERAL = 6;
 const FOLDING = 0.1;
 /** Rise of X two standard deviations away is 4 for a Gaussian; beyond these bounds it is called none. */
 const RISE: readonly [number, number] = [2, 8];
+/** X per point beyond which no posterior is worth drawing from. */
+const HOPELESS = 4;
 const SEED = 17;
 
 export function posteriorOf(
@@ -35,7 +37,8 @@ export function posteriorOf(
 ): Posterior {
   const best = modes[0]!;
   const kept = modes.filter(({ x }) => x < best.x + SEVERAL);
-  const why = sampling === 'always' ? 'as asked for' : sampling === 'never' ? '' : notGaussian(model, best, kept, trial);
+  const isHopeless = best.x > HOPELESS * model.size;
+  const why = sampling === 'always' ? 'as asked for' : sampling === 'never' || isHopeless ? '' : notGaussian(model, best, kept, trial);
   if (why === '') {
     const covariance = covarianceOf(best);
     const spread = new CholeskyDecomposition(covariance).lowerTriangularMatrix;
@@ -48,7 +51,12 @@ export function posteriorOf(
         return model.bounded[a] ? Math.abs(value) : value;
       });
     };
-    const reason = sampling === 'never' ? 'as asked for' : 'X rises about its minimum as a Gaussian does';
+    const reason =
+      sampling === 'never'
+        ? 'as asked for'
+        : isHopeless
+          ? 'the fit is too poor for its widths to matter'
+          : 'X rises about its minimum as a Gaussian does';
     return { method: 'gaussian', reason, sd: Float64Array.from(covariance.diagonal(), Math.sqrt), draw };
   }
   const draws = samplePosterior(model, kept, running);

@@ -140,7 +140,7 @@ function radially({ signal }: TrialSite, atom: number, to: (distance: number) =>
   return { position: [along(0), along(1), along(2)], distance: wanted };
 }
 
-function changed(site: TrialSite, change: Change, { options }: TrialSpectrum, clock: StageClock, running?: Running): TrialSite {
+function changed(site: TrialSite, change: Change, spectrum: TrialSpectrum, clock: StageClock, running?: Running): TrialSite {
   const { signal, nearest } = site;
   const atoms = signal.site.atoms.map((atom, i) => ({ ...atom, ...change.atoms?.get(i) }));
   const kinds = Array.from(signal.kindOfAtom);
@@ -163,16 +163,16 @@ function changed(site: TrialSite, change: Change, { options }: TrialSpectrum, cl
   const missing = fresh.some((i) => !known.has(atoms[i]!.element));
   if (missing) {
     const present = atoms.filter((_, i) => !change.removed?.has(i));
-    const scattering = siteScattering({ ...signal.site, atoms: present }, options, clock, running);
+    const scattering = siteScattering({ ...signal.site, atoms: present }, spectrum.options, clock, running);
     const kindOfAtom = new Int32Array(atoms.length).fill(-1);
     let n = 0;
     atoms.forEach((_, i) => {
       if (!change.removed?.has(i)) kindOfAtom[i] = scattering.kindOfAtom[n++]!;
     });
-    return changedSite(site, { atoms, kindOfAtom, nearest: shell, twinOf, scattering }, options, clock, running);
+    return changedSite(site, { atoms, kindOfAtom, nearest: shell, twinOf, scattering }, spectrum, clock, running);
   }
   for (const i of fresh) kinds[i] = known.get(atoms[i]!.element)!;
-  return changedSite(site, { atoms, kindOfAtom: Int32Array.from(kinds), nearest: shell, twinOf }, options, clock, running);
+  return changedSite(site, { atoms, kindOfAtom: Int32Array.from(kinds), nearest: shell, twinOf }, spectrum, clock, running);
 }
 
 /** An oxygen where the first shell leaves most room, or undefined where there is none. */

@@ -15,8 +15,8 @@ import { covarianceOf } from './posterior.js';
 
 const SEED = 29;
 /** Draws kept of each chain, and dropped before them. */
-const KEPT = 600;
-const BURN_IN = 150;
+const KEPT = 300;
+const BURN_IN = 60;
 /** The fitted Gaussian is widened by this factor in standard deviation: tails are then found, not missed. */
 const WIDEN = 1.3;
 

@@ -7,8 +7,8 @@
  * with t the thermal scale, e the extra static σ² and δ the change of the half length (spectrum/path-sum.ts says where the phases come
  * from; the amplitude's 1/R² and mean free path follow δ to first order). Å, Å⁻¹, Å², eV.
  */
-import { EV_PER_K_SQUARED } from '../constants.js';
 import type { SiteSignal } from '../predict/site-signal.js';
+import type { OriginSignals } from './origin-signals.js';
 
 /** How the parameters act on the paths of one site; indices into the parameter vector. */
 export interface SiteUnknowns {
@@ -35,68 +35,29 @@ export class SiteTerms {
   readonly unknowns: SiteUnknowns;
   private readonly sigma2: Float64Array;
   private readonly c3: Float64Array;
-  private readonly k: Float64Array;
-  private readonly kTheory: Float64Array;
-  private readonly inverseLambda: Float64Array;
-  private readonly inverseLambdaSlope: Float64Array;
-  /** dk_theory/dE0, 0 where k is held at its lowest value. */
-  private readonly kPerEv: Float64Array;
-  private readonly re: Float64Array;
-  private readonly im: Float64Array;
-  private readonly dRe: Float64Array;
-  private readonly dIm: Float64Array;
+  private readonly atOrigin: OriginSignals;
   private readonly work: Float64Array;
-  private e0 = Number.NaN;
 
   /**
-   * @param k       Å⁻¹ (nk)
-   * @param sigma2  thermal σ² of every path, Å² (np)
-   * @param c3      third cumulant of every path, Å³ (np)
+   * @param atOrigin  amplitudes on the grid of the data; models of one site may share it
+   * @param sigma2    thermal σ² of every path, Å² (np)
+   * @param c3        third cumulant of every path, Å³ (np)
    */
-  constructor(signal: SiteSignal, k: Float64Array, sigma2: Float64Array, c3: Float64Array, unknowns: SiteUnknowns) {
-    const nk = k.length;
-    const np = signal.signals.length;
-    this.signal = signal;
+  constructor(atOrigin: OriginSignals, sigma2: Float64Array, c3: Float64Array, unknowns: SiteUnknowns) {
+    this.signal = atOrigin.signal;
+    this.atOrigin = atOrigin;
     this.unknowns = unknowns;
     this.sigma2 = sigma2;
     this.c3 = c3;
-    this.k = k;
-    this.kTheory = new Float64Array(nk);
-    this.inverseLambda = new Float64Array(nk);
-    this.inverseLambdaSlope = new Float64Array(nk);
-    this.kPerEv = new Float64Array(nk);
-    this.re = new Float64Array(nk * np);
-    this.im = new Float64Array(nk * np);
-    this.dRe = new Float64Array(nk * np);
-    this.dIm = new Float64Array(nk * np);
-    this.work = new Float64Array(3 * nk);
-  }
-
-  private moveOrigin(e0: number): void {
-    if (e0 === this.e0) return;
-    this.e0 = e0;
-    const { k, kTheory, kPerEv, signal } = this;
-    const nk = k.length;
-    const lowest = signal.table.k[0]!;
-    for (let i = 0; i < nk; i++) {
-      const square = k[i]! * k[i]! - e0 / EV_PER_K_SQUARED;
-      const isHeld = square <= lowest * lowest;
-      kTheory[i] = isHeld ? lowest : Math.sqrt(square);
-      kPerEv[i] = isHeld ? 0 : -0.5 / (EV_PER_K_SQUARED * kTheory[i]!);
-      this.inverseLambda[i] = signal.wave.inverseMeanFreePath(kTheory[i]!);
-      this.inverseLambdaSlope[i] = signal.wave.inverseMeanFreePathSlope(kTheory[i]!);
-    }
-    signal.signals.forEach((path, j) => {
-      const part = (all: Float64Array) => all.subarray(j * nk, (j + 1) * nk);
-      path.evaluateWithSlope(kTheory, part(this.re), part(this.im), part(this.dRe), part(this.dIm));
-    });
+    this.work = new Float64Array(3 * atOrigin.kTheory.length);
   }
 
   /** Adds the site's part to chi (nk) and, if given, to the derivatives by z, row-major (parameters, nk). */
   addTo(chi: Float64Array, { z, value, slope }: ParameterValues, jacobian?: Float64Array): void {
-    const { unknowns, kTheory: k, inverseLambda, inverseLambdaSlope, kPerEv, re, im, dRe, dIm, work, signal } = this;
+    const { unknowns, atOrigin, work, signal } = this;
     const { shiftStart, shiftParameter, shiftCoefficient } = unknowns;
-    this.moveOrigin(value[unknowns.energyOrigin]!);
+    atOrigin.moveTo(value[unknowns.energyOrigin]!);
+    const { kTheory: k, inverseLambda, inverseLambdaSlope, kPerEv, re, im, dRe, dIm } = atOrigin;
     const nk = k.length;
     const dSigma = work.subarray(0, nk);
     const dCubic = work.subarray(nk, 2 * nk);
@@ -134,8 +95,8 @@ export class SiteTerms {
         const rate = inverseLambdaSlope[i]!;
         const dDamping = -4 * sigma2 * ki - 2 * shift * rate;
         const dPhase = 2 * shift - 4 * sigma2 * (inverse + ki * rate) - 4 * c3 * k2;
-        const byK = dRe[base + i]! * s + dIm[base + i]! * c + dDamping * uIm + dPhase * uRe;
-        jacobian[originRow + i]! += perEv * kPerEv[i]! * byK;
+        const direct = dRe[base + i]! * s + dIm[base + i]! * c;
+        jacobian[originRow + i]! += perEv * (direct + kPerEv[i]! * (dDamping * uIm + dPhase * uRe));
         jacobian[amplitudeRow + i]! += perAmplitude * uIm;
       }
       if (jacobian === undefined) continue;

@@ -2,7 +2,7 @@
  * A trial as residuals of its parameters: which unknown moves which path by how much, and the whitened misfit of all spectra
  * together. Free distances are an option, for the refits.
  */
-import { classOf, lengthSd, type PathClass, radialPulls } from '../predict/unknowns.js';
+import { lengthSd, pathClass, radialPulls } from '../predict/unknowns.js';
 import { project } from './data-vector.js';
 import type { ResidualModel } from './minimise.js';
 import {
@@ -37,8 +37,7 @@ export function trialModel(spectra: readonly TrialSpectrum[], spread: number, fr
     vector: spectrum.vector,
     offset: spectra.slice(0, s).reduce((sum, { vector }) => sum + vector.size, 0),
     terms: spectrum.sites.map(
-      (site) =>
-        new SiteTerms(site.signal, spectrum.vector.k, site.sigma2, site.c3, unknownsOf(parameters, spectrum, s, site, spread, freedom)),
+      (site) => new SiteTerms(site.atOrigin, site.sigma2, site.c3, unknownsOf(parameters, spectrum, s, site, spread, freedom)),
     ),
     chi: new Float64Array(spectrum.vector.k.length),
     projected: new Float64Array(spectrum.vector.size),
@@ -96,7 +95,7 @@ function unknownsOf(
   spread: number,
   freedom: Freedom,
 ): SiteUnknowns {
-  const { signal, nearest } = site;
+  const { signal, classes } = site;
   const { paths } = signal;
   const { atoms, label } = signal.site;
   const origin = parameters.add(energyOrigin(element, edge, expected));
@@ -121,10 +120,9 @@ function unknownsOf(
   }
   const stretch = freedom === 'stretch' ? parameters.add(freeStretch()) : -1;
 
-  const kindOfAtom = (atom: number): PathClass => classOf(2, nearest.has(atom), atoms[atom]!.element);
-  paths.forEach(({ vertices, legs, halfLength }, j) => {
+  paths.forEach(({ vertices, halfLength }, j) => {
     const elements = vertices.slice(1).map((vertex) => atoms[vertex]!.element);
-    const kind = classOf(legs, nearest.has(vertices[1]!), elements[0]!);
+    const kind = pathClass(vertices, classes);
     thermal[j] = parameters.add(thermalScale(element, kind));
     extra[j] = parameters.add(extraStatic(element, kind, spread));
     shifts.push({ parameter: parameters.add(classShift(element, kind)), coefficient: lengthSd(halfLength, elements) });
@@ -134,7 +132,7 @@ function unknownsOf(
       const own = scatterers.get(atom);
       if (own !== undefined) shifts.push({ parameter: own, coefficient: pull * parameters.list[own]!.sd });
       if (freedom !== 'classes') continue;
-      const free = parameters.add(freeShift(element, kindOfAtom(atom)));
+      const free = parameters.add(freeShift(element, classes[atom]!));
       shifts.push({ parameter: free, coefficient: pull * parameters.list[free]!.sd });
     }
     start[j + 1] = shifts.length;

@@ -10,11 +10,12 @@ import { DEFAULTS } from '../predict/options.js';
 import { pathSignals, type SiteScattering, type SiteSignal, type StageClock, siteScattering } from '../predict/site-signal.js';
 import { thermalModel } from '../predict/thermal.js';
 import type { PredictOptions } from '../predict/types.js';
-import type { EnergyOrigin } from '../predict/unknowns.js';
+import { atomClasses, type EnergyOrigin, type PathClass } from '../predict/unknowns.js';
 import { OVERLAP_RADIUS } from '../scattering/index.js';
 import { type CoordinatePrecision, coordinatePrecision, coordinationShell, distanceSd, findSites } from '../structure/index.js';
 import type { Site, SiteAtom, Structure } from '../structure/types.js';
 import type { DataVector } from './data-vector.js';
+import { OriginSignals } from './origin-signals.js';
 import type { JudgeOptions } from './types.js';
 
 /** Where no bond can be made out, neighbours up to this factor beyond the nearest are the first shell. */
@@ -23,8 +24,12 @@ const FIRST_SHELL = 1.25;
 /** One site as one spectrum sees it. */
 export interface TrialSite {
   readonly signal: SiteSignal;
+  /** Its amplitudes at any energy origin, on the grid of the data. */
+  readonly atOrigin: OriginSignals;
   /** Indices into site.atoms of the first coordination shell. */
   readonly nearest: ReadonlySet<number>;
+  /** Shell class of every atom as a single scatterer. */
+  readonly classes: readonly PathClass[];
   /** Thermal σ² (Å²) and third cumulant (Å³) of every path (np). */
   readonly sigma2: Float64Array;
   readonly c3: Float64Array;
@@ -113,6 +118,7 @@ export function prepareTrial(
       const [centre] = signal.site.atoms;
       return trialSite({
         signal,
+        atOrigin: new OriginSignals(signal, vector.k),
         nearest: firstShell(signal.site, structure),
         twinOf: new Map(),
         thermal: model,
@@ -125,7 +131,7 @@ export function prepareTrial(
 }
 
 /** Fills in σ² and third cumulants of every path from the thermal model. */
-export function trialSite(known: Omit<TrialSite, 'sigma2' | 'c3'>): TrialSite {
+export function trialSite(known: Omit<TrialSite, 'sigma2' | 'c3' | 'classes'>): TrialSite {
   const { signal, nearest, thermal, twinOf } = known;
   const { site, paths } = signal;
   const sigma2 = new Float64Array(paths.length);
@@ -140,7 +146,7 @@ export function trialSite(known: Omit<TrialSite, 'sigma2' | 'c3'>): TrialSite {
       if (legs === 2 && nearest.has(vertices[1]!)) c3[j] = morseThirdCumulant(sigma2[j]!, thermal.sigma2AtZero(route));
     });
   }
-  return { ...known, sigma2, c3 };
+  return { ...known, classes: atomClasses(site, nearest), sigma2, c3 };
 }
 
 /** The same site with changed atoms, its paths found anew with the phase shifts at hand. */
@@ -153,7 +159,7 @@ export function changedSite(
     readonly twinOf?: ReadonlyMap<number, number>;
     readonly scattering?: SiteScattering;
   },
-  options: PredictOptions,
+  { options, vector }: TrialSpectrum,
   clock: StageClock,
   running?: Running,
 ): TrialSite {
@@ -165,6 +171,7 @@ export function changedSite(
   return trialSite({
     ...known,
     signal,
+    atOrigin: new OriginSignals(signal, vector.k),
     nearest: change.nearest,
     twinOf,
     distanceSd: (atom) => known.distanceSd(own(atom)),

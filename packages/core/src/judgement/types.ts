@@ -169,7 +169,10 @@ export interface CandidateJudgement {
   readonly xData: number;
   readonly xPrior: number;
   readonly independentPoints: number;
+  /** P(chi² > X) with N_idp degrees of freedom. */
   readonly p: number;
+  /** Probability that setting the distances free gains by chance what it gained; the finding takes the worse of both. */
+  readonly pDistances: number;
   readonly rFactor: number;
   /** Power to reject a first shell off by 0.1 Å. */
   readonly power: number;

@@ -7,7 +7,17 @@ import { type PathDisorder, PathSum } from '../spectrum/index.js';
 import { type CoordinatePrecision, distanceSd } from '../structure/index.js';
 import type { SiteSignal } from './site-signal.js';
 import type { Bands, PredictOptions } from './types.js';
-import { classOf, ENERGY_ORIGIN, EXTRA_STATIC, LN_AMPLITUDE, LN_THERMAL_SD, lengthSd, PATH_CLASSES, radialPulls } from './unknowns.js';
+import {
+  atomClasses,
+  ENERGY_ORIGIN,
+  EXTRA_STATIC,
+  LN_AMPLITUDE,
+  LN_THERMAL_SD,
+  lengthSd,
+  PATH_CLASSES,
+  pathClass,
+  radialPulls,
+} from './unknowns.js';
 
 const DRAWS = 200;
 const SEED = 1;
@@ -84,14 +94,16 @@ function partsOf({ signal, isNearest }: BandSite, precision: CoordinatePrecision
     for (const [, atom] of members) scattererOf.set(atom!, scatterers.length);
     scatterers.push(distanceSd(precision, absorber!, site.atoms[members[0]![1]!]!));
   }
-  const parts = paths.map(({ vertices, legs, halfLength }, j): PathPart => {
+  const nearest = new Set(paths.flatMap(({ members }, j) => (isNearest[j] ? members.map(([, atom]) => atom!) : [])));
+  const classes = atomClasses(site, nearest);
+  const parts = paths.map(({ vertices, halfLength }): PathPart => {
     const elements = vertices.slice(1).map((vertex) => site.atoms[vertex]!.element);
     const pulls = radialPulls(site, vertices).flatMap(({ atom, pull }) => {
       const scatterer = scattererOf.get(atom);
       return scatterer === undefined ? [] : [{ scatterer, pull }];
     });
     return {
-      kind: PATH_CLASSES.indexOf(classOf(legs, isNearest[j]!, elements[0]!)),
+      kind: PATH_CLASSES.indexOf(pathClass(vertices, classes)),
       lengthSd: lengthSd(halfLength, elements),
       pulls,
     };

@@ -42,12 +42,25 @@ export const CLASS_NAMES: Readonly<Record<PathClass, string>> = {
   multiple: 'multiple scattering',
 };
 
-/** The class of a path, by its number of legs and whether its (first) scatterer is a nearest neighbour. */
-export function classOf(legs: number, isNearest: boolean, element: string): PathClass {
-  if (legs > 2) return 'multiple';
-  if (isNearest) return 'nearest';
-  return isMetal(element) ? 'metal' : 'beyond';
+/** Å: how far a second metal is looked for, and how much farther than the nearest one its like may be. */
+const METAL_REACH = 4.2;
+const METAL_SPREAD = 0.5;
+
+/**
+ * The class of every atom of a site as a single scatterer; metal–metal is the nearest shell of metals behind the first shell.
+ *
+ * @param nearest  atoms of the first shell, indices into site.atoms
+ */
+export function atomClasses({ atoms }: Site, nearest: ReadonlySet<number>): readonly PathClass[] {
+  const isMetalBehind = (i: number): boolean => i > 0 && !nearest.has(i) && isMetal(atoms[i]!.element);
+  const first = atoms.findIndex((_, i) => isMetalBehind(i));
+  const reach = first < 0 ? 0 : Math.min(METAL_REACH, atoms[first]!.distance + METAL_SPREAD);
+  return atoms.map(({ distance }, i) => (nearest.has(i) ? 'nearest' : isMetalBehind(i) && distance <= reach ? 'metal' : 'beyond'));
 }
+
+/** The class of a path: its scatterer's, or 'multiple'. */
+export const pathClass = (vertices: readonly number[], classes: readonly PathClass[]): PathClass =>
+  vertices.length > 2 ? 'multiple' : classes[vertices[1]!]!;
 
 /** Standard deviation of the theory's error in a half path length, Å, for the elements on the way. */
 export const lengthSd = (halfLength: number, elements: readonly string[]): number =>
