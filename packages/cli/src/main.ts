@@ -3,6 +3,7 @@
 import { VERSION } from '@ringtrue/core';
 import { Command, CommanderError } from 'commander';
 import { addDose } from './dose.js';
+import { addJudge } from './judge.js';
 import { addPredict } from './predict.js';
 import { addReduce } from './reduce.js';
 import { addServe } from './serve.js';
@@ -21,6 +22,7 @@ const program = new Command('ringtrue')
   .exitOverride();
 
 addPredict(program);
+addJudge(program);
 addReduce(program);
 addDose(program);
 addSites(program);

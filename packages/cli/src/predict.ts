@@ -3,10 +3,12 @@ import { basename } from 'node:path';
 import { type Prediction, type PredictOptions, predict, readStructure, VERSION } from '@ringtrue/core';
 import { chiInK, chiInR } from '@ringtrue/figures';
 import { csvTable, predictionHtml, tablesOf } from '@ringtrue/report';
-import { type Command, InvalidArgumentError, Option } from 'commander';
+import { type Command, Option } from 'commander';
 import { aboutFile, runCommand } from './command.js';
+import { number } from './evidence-options.js';
 import { readText, writeFolder } from './files.js';
 import { toJson } from './json.js';
+import { showProgress } from './progress.js';
 import { plain, smallPlot, textTable } from './terminal.js';
 
 interface Flags extends Partial<PredictOptions> {
@@ -51,15 +53,8 @@ Examples:
 
 A prediction that agrees with a measurement shows consistency; it is no proof of a structure.`;
 
-function number(text: string): number {
-  const value = Number(text);
-  if (text.trim() === '' || !Number.isFinite(value)) throw new InvalidArgumentError(`a number is wanted, got "${plain(text)}".`);
-  return value;
-}
-
 function run(file: string, { json, out, ...options }: Flags): void {
   const prediction = compute(file, { ...options, bands: json === true || out !== undefined });
-  if (process.stderr.isTTY) process.stderr.write('\r\u001b[K');
   if (out !== undefined) writeFolder(out, filesOf(prediction));
   if (json) {
     process.stdout.write(`${toJson(prediction)}\n`);
@@ -71,24 +66,16 @@ function run(file: string, { json, out, ...options }: Flags): void {
 
 function compute(file: string, options: Omit<Flags, 'json' | 'out'>): Prediction {
   const text = readText(file);
-  const context = { file: basename(file), version: VERSION, now: () => performance.now() / 1000, ...progress() };
-  return aboutFile(file, () => predict(readStructure(text, { fileName: file }), options, context));
-}
-
-/** A line on standard error that overwrites itself, where a person is looking. */
-function progress(): { running?: { onProgress: (stage: string, fraction: number) => void } } {
-  if (!process.stderr.isTTY) return {};
-  let shown = '';
-  return {
-    running: {
-      onProgress(stage, fraction) {
-        const line = `${stage} ${Math.round(100 * fraction)} %`;
-        if (line === shown) return;
-        shown = line;
-        process.stderr.write(`\r\u001b[K${plain(line)}`);
-      },
-    },
+  const progress = showProgress();
+  const context = {
+    file: basename(file),
+    version: VERSION,
+    now: () => performance.now() / 1000,
+    ...(progress ? { running: progress.running } : {}),
   };
+  const prediction = aboutFile(file, () => predict(readStructure(text, { fileName: file }), options, context));
+  progress?.clear();
+  return prediction;
 }
 
 function filesOf(prediction: Prediction): Map<string, string> {

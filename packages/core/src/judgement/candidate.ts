@@ -9,9 +9,9 @@ import { assumptionsOf, disorderRows, distinctAbsorbers } from './describe.js';
 import { CAUTION, CONSISTENT, cannotTell, distancesProbability, findingSentence, findingWord, strainedOf, wouldChange } from './finding.js';
 import { type Minimum, minimise } from './minimise.js';
 import { describeClass, overlength } from './overlength.js';
-import { freeShift } from './parameters.js';
-import { logEvidence, powerAgainst } from './posterior.js';
+import { logEvidence } from './posterior.js';
 import { type Posterior, posteriorOf } from './posterior-shape.js';
+import { powerAgainst } from './power.js';
 import { rivalsOf } from './rivals.js';
 import { prepareTrial, type SpectrumRequest, type Trial } from './trial.js';
 import { type TrialModel, trialModel } from './trial-model.js';
@@ -58,7 +58,7 @@ export function judgeCandidate(
     p: chiSquaredAbove(best.x, degrees),
     pDistances: distancesProbability(stretched),
     rFactor: jointRFactor(comparisons, requests),
-    power: powerOfProbe(trial, model, best, spread, degrees),
+    power: powerAgainst(trial, model, spread, degrees, PROBE),
   };
   const strained = strainedOf(parameters);
   const finding = findingWord(numbers.p, numbers.pDistances, numbers.power, strained);
@@ -140,36 +140,6 @@ function describeParameters({ list }: TrialModel, { z }: Minimum, { sd }: Poster
     sd: Math.abs(slope(z[p]!)) * sd[p]!,
     strain: z[p]!,
   }));
-}
-
-/** Power against a first shell that is off by PROBE either way, the smaller of the two. */
-function powerOfProbe(trial: Trial, held: TrialModel, best: Minimum, spread: number, degrees: number): number {
-  const model = trialModel(trial.spectra, spread, 'classes');
-  const z = new Float64Array(model.parameters);
-  model.list.forEach(({ key }, p) => {
-    const known = held.indexOf(key);
-    if (known !== undefined) z[p] = best.z[known]!;
-  });
-  const reference = new Float64Array(model.size);
-  model.evaluate(z, reference);
-  const elements = new Set(trial.spectra.map(({ element }) => element));
-  return Math.min(
-    ...[-PROBE, PROBE].map((shift) => {
-      const moved = Float64Array.from(z);
-      for (const element of elements) {
-        const { key, sd } = freeShift(element, 'nearest');
-        const p = model.indexOf(key);
-        if (p !== undefined) moved[p] = shift / sd;
-      }
-      const change = new Float64Array(model.size);
-      model.evaluate(moved, change);
-      return powerAgainst(
-        change.map((value, i) => value - reference[i]!),
-        best,
-        degrees,
-      );
-    }),
-  );
 }
 
 function judgeRivals(trial: Trial, spread: number, degrees: number, evidence: number, clock: StageClock, running?: Running): RivalResult[] {

@@ -1,8 +1,8 @@
 /**
  * The data vector: as many independent numbers as a window in k and R holds, and how well each is known.
  *
- * T takes χ(k) to the N complex points of the windowed, kⁿ-weighted transform in the R range, real and imaginary parts as 2N rows. With
- * σ the standard deviation of χ on its grid, T diag(σ) = U S Vᵀ; the leading n = N_idp = 2 Δk ΔR/π directions (the window's
+ * T takes χ(k), its background removed, to the N complex points of the windowed, kⁿ-weighted transform in the R range, real and imaginary
+ * parts as 2N rows. With σ the standard deviation of χ on its grid, T diag(σ) = U S Vᵀ; the leading n = N_idp = 2 Δk ΔR/π directions (the window's
  * Slepian-like modes: Slepian & Pollak, Bell Syst. Tech. J. 40, 43 (1961)) are the data vector
  *
  *   y = Uᵀ T χ,   noise of y_i: s_i, independent of one another
@@ -68,31 +68,38 @@ export function dataVector(reduction: Reduction, window: DataWindow, modelError:
   const transform: TransformSettings = { kWeight, kMin: kRange[0], kMax: kRange[1] };
   const plan = transformPlan(k, transform);
   const used = Array.from(plan.R.keys()).filter((m) => plan.R[m]! >= rRange[0] - 1e-9 && plan.R[m]! <= rRange[1] + 1e-9);
-  const T = transformRows(plan.weight, k, plan.R, used);
-  const sigma = noiseShape(reduction, plan.weight);
-  const n = Math.round(independentPoints);
-  const { directions, values } = leadingDirections(T, sigma, nk, n);
-
+  const direct = transformRows(plan.weight, k, plan.R, used);
   const projector = projectorOf(reduction, rRange[0]);
-  const projected = projectedRows(directions, projector, nk);
+  const T = projectedRows(direct, projector, nk);
+  const n = Math.round(independentPoints);
+  const { directions, values } = leadingDirections(T, noiseShape(reduction, plan.weight), nk, n);
+
+  // what came from a reduction has passed the removal of the background already
   const isReady = reduction.background.coefficients === 0;
-  const y = multiply(isReady ? projected : directions, chi, nk);
+  const seen = isReady ? projector.apply(chi) : chi;
+  const y = multiply(directions, multiply(direct, seen, nk), direct.length / nk);
   let power = 0;
   for (const value of y) power += value * value;
   const floor2 = (modelError * modelError * power) / n;
   const scale = Math.sqrt(independentPoints / n);
   const inverse = values.map((s) => scale / Math.sqrt(s * s + floor2));
 
-  for (let i = 0; i < n; i++) for (let j = 0; j < nk; j++) projected[i * nk + j]! *= inverse[i]!;
+  const rows = new Float64Array(n * nk);
+  for (let i = 0; i < n; i++) {
+    for (let a = 0; a < used.length * 2; a++) {
+      const u = directions[i * 2 * used.length + a]! * inverse[i]!;
+      for (let j = 0; j < nk; j++) rows[i * nk + j]! += u * T[a * nk + j]!;
+    }
+  }
   const perPoint = power / used.length;
   return {
     window,
     independentPoints,
     size: n,
     k,
-    chi: isReady ? projector.apply(chi) : chi,
+    chi: seen,
     data: y.map((value, i) => value * inverse[i]!),
-    rows: projected,
+    rows,
     noisePart: values.map((s) => s / Math.sqrt(s * s + floor2)),
     epsilonR: reduction.noise.epsilonR * noiseScale(reduction, plan.weight),
     epsilonK: reduction.noise.epsilonK,
@@ -178,7 +185,7 @@ function noiseShape({ k, sigmaChi, noise }: Reduction, weight: Float64Array): Fl
   return sigmaChi.map((s) => (Number.isFinite(s) ? s * level : noise.epsilonK));
 }
 
-/** The n leading left singular directions of T diag(σ), as rows Uᵀ T (n, nk), and their singular values. */
+/** The n leading left singular directions of T diag(σ), as rows Uᵀ (n, rows of T), and their singular values. */
 function leadingDirections(T: Float64Array, sigma: Float64Array, nk: number, n: number) {
   const rows = T.length / nk;
   const gram = new Matrix(rows, rows);
@@ -192,22 +199,20 @@ function leadingDirections(T: Float64Array, sigma: Float64Array, nk: number, n: 
   }
   const { realEigenvalues, eigenvectorMatrix } = new EigenvalueDecomposition(gram, { assumeSymmetric: true });
   const order = Array.from(realEigenvalues.keys()).sort((a, b) => realEigenvalues[b]! - realEigenvalues[a]!);
-  const directions = new Float64Array(n * nk);
+  const directions = new Float64Array(n * rows);
   const values = new Float64Array(n);
   for (let i = 0; i < n; i++) {
     const column = order[i]!;
     values[i] = Math.sqrt(Math.max(0, realEigenvalues[column]!));
-    for (let a = 0; a < rows; a++) {
-      const u = eigenvectorMatrix.get(a, column);
-      for (let j = 0; j < nk; j++) directions[i * nk + j]! += u * T[a * nk + j]!;
-    }
+    for (let a = 0; a < rows; a++) directions[i * rows + a] = eigenvectorMatrix.get(a, column);
   }
   return { directions, values };
 }
 
-function multiply(rows: Float64Array, chi: Float64Array, nk: number): Float64Array {
-  const out = new Float64Array(rows.length / nk);
-  for (let i = 0; i < out.length; i++) for (let j = 0; j < nk; j++) out[i]! += rows[i * nk + j]! * chi[j]!;
+/** Rows (m, columns) times a vector. */
+function multiply(rows: Float64Array, vector: Float64Array, columns: number): Float64Array {
+  const out = new Float64Array(rows.length / columns);
+  for (let i = 0; i < out.length; i++) for (let j = 0; j < columns; j++) out[i]! += rows[i * columns + j]! * vector[j]!;
   return out;
 }
 

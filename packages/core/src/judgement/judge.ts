@@ -73,9 +73,14 @@ export function judge(
     prediction: 0,
     rivals: 0,
   };
-  const judged: CandidateJudgement[] = candidates.map(({ file, structure }) =>
-    judgeCandidate(file, structure, requests, settings, clock, running),
-  );
+  const judged: CandidateJudgement[] = candidates.map(({ file, structure }) => {
+    try {
+      return judgeCandidate(file, structure, requests, settings, clock, running);
+    } catch (error) {
+      if (error instanceof InputError) throw new InputError(`${file}: ${error.message}`);
+      throw error;
+    }
+  });
   const total = now() - started;
   return {
     program: { name: 'ringtrue', version },

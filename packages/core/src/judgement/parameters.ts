@@ -12,6 +12,8 @@ export interface Parameter {
   readonly shell: string;
   readonly unit: string;
   readonly isHalfNormal: boolean;
+  /** Class of the scatterer a shift belongs to. */
+  readonly shellClass?: PathClass;
   /** Of the prior, in the parameter's own unit. */
   readonly mean: number;
   readonly sd: number;
@@ -75,10 +77,11 @@ export const classShift = (element: string, kind: PathClass): Parameter => ({
 });
 
 /** @param sd  standard uncertainty of the distance, Å */
-export const scattererShift = (pair: string, shell: string, sd: number): Parameter => ({
+export const scattererShift = (pair: string, shell: string, shellClass: PathClass, sd: number): Parameter => ({
   key: `scatterer-shift ${pair}`,
   name: 'scatterer-shift',
   shell,
+  shellClass,
   unit: 'Å',
   isHalfNormal: false,
   ...linear(0, sd),

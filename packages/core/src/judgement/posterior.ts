@@ -1,6 +1,6 @@
 /** Around the best point: covariance, evidence, power. z-space: parameters in standard deviations of their priors. */
-import { CholeskyDecomposition, inverse, Matrix } from 'ml-matrix';
-import { chiSquaredQuantile, noncentralAbove, upperGamma } from '../numerics/chi-squared.js';
+import { CholeskyDecomposition, inverse, type Matrix } from 'ml-matrix';
+import { upperGamma } from '../numerics/chi-squared.js';
 import { curvatureOf, type Minimum } from './minimise.js';
 
 /** Posterior covariance of z in the Gaussian approximation, (P, P); parameters at their bound count as free. */
@@ -40,28 +40,4 @@ export function logEvidence(minimum: Minimum, bounded: readonly boolean[]): numb
 export function normalBelow(t: number): number {
   const tail = 0.5 * upperGamma(0.5, (t * t) / 2);
   return t < 0 ? tail : 1 - tail;
-}
-
-/** Level of the test whose power is asked for. */
-const LEVEL = 0.05;
-
-/**
- * Probability to reject at 5 % a structure whose prediction is off by `change` (n, whitened) after every parameter has done what it can:
- * non-centrality changeᵀ (1 + J Jᵀ)⁻¹ change.
- */
-export function powerAgainst(change: Float64Array, { jacobian, z }: Minimum, degrees: number): number {
-  const n = change.length;
-  const C = Matrix.eye(n);
-  for (let a = 0; a < n; a++) {
-    for (let b = 0; b <= a; b++) {
-      let sum = 0;
-      for (let p = 0; p < z.length; p++) sum += jacobian[p * n + a]! * jacobian[p * n + b]!;
-      C.set(a, b, C.get(a, b) + sum);
-      if (a !== b) C.set(b, a, C.get(a, b));
-    }
-  }
-  const solved = new CholeskyDecomposition(C).solve(Matrix.columnVector(change));
-  let delta = 0;
-  for (let i = 0; i < n; i++) delta += change[i]! * solved.get(i, 0);
-  return noncentralAbove(chiSquaredQuantile(LEVEL, degrees), degrees, Math.max(0, delta));
 }

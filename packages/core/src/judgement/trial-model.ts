@@ -115,7 +115,7 @@ function unknownsOf(
     const { source, distance, name } = atoms[first]!;
     const pair = [atoms[0]!.source, source].sort((a, b) => a - b).join('-');
     const words = `${name} at ${distance.toFixed(2)} Å from ${label}`;
-    const parameter = parameters.add(scattererShift(`${pair} ${distance.toFixed(3)}`, words, sd));
+    const parameter = parameters.add(scattererShift(`${pair} ${distance.toFixed(3)}`, words, classes[first]!, sd));
     for (const [, atom] of members) scatterers.set(atom!, parameter);
   }
   const stretch = freedom === 'stretch' ? parameters.add(freeStretch()) : -1;

@@ -3,7 +3,7 @@
  * Nothing here has seen the data but for their grid. Å, Å⁻¹, Å², eV, K.
  */
 import type { Edge } from '../atom/types.js';
-import { morseThirdCumulant, suggestThermalModel, type ThermalModel } from '../disorder/index.js';
+import { morseThirdCumulant, suggestThermalModel, type ThermalModel, type ThermalVertex } from '../disorder/index.js';
 import { edgeEnergyEv, elementBySymbol } from '../elements/index.js';
 import { type Diagnostic, InputError, type Running } from '../errors.js';
 import { DEFAULTS } from '../predict/options.js';
@@ -138,15 +138,26 @@ export function trialSite(known: Omit<TrialSite, 'sigma2' | 'c3' | 'classes'>): 
   const c3 = new Float64Array(paths.length);
   if (thermal) {
     paths.forEach(({ vertices, legs }, j) => {
-      const route = vertices.map((atom) => {
-        const { position, element } = site.atoms[atom]!;
-        return { atom: twinOf.get(atom) ?? atom, position, element, mass: elementBySymbol(element).mass };
-      });
+      const route = thermalRoute(site, vertices, twinOf);
       sigma2[j] = thermal.sigma2(route);
       if (legs === 2 && nearest.has(vertices[1]!)) c3[j] = morseThirdCumulant(sigma2[j]!, thermal.sigma2AtZero(route));
     });
   }
   return { ...known, classes: atomClasses(site, nearest), sigma2, c3 };
+}
+
+/**
+ * A path as the thermal model knows it. An atom a rival added is unknown there and vibrates like its twin, from the twin's place; a route
+ * over both would fold up and is taken as the single scattering of the twin.
+ */
+function thermalRoute({ atoms }: Site, vertices: readonly number[], twinOf: ReadonlyMap<number, number>): ThermalVertex[] {
+  const known = vertices.map((atom) => twinOf.get(atom) ?? atom);
+  const folds = known.some((atom, i) => atom === known[(i + 1) % known.length]);
+  const added = vertices.find((atom) => twinOf.has(atom));
+  return (folds ? [0, twinOf.get(added!)!] : known).map((atom) => {
+    const { position, element } = atoms[atom]!;
+    return { atom, position, element, mass: elementBySymbol(element).mass };
+  });
 }
 
 /** The same site with changed atoms, its paths found anew with the phase shifts at hand. */
