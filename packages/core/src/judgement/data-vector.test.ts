@@ -4,10 +4,10 @@ import type { Reduction } from '../evidence/index.js';
 import { chiSquaredAbove } from '../numerics/chi-squared.js';
 import { normalDeviates } from '../numerics/random.js';
 import { informationContent } from '../spectrum/index.js';
-import { dataVector, project } from './data-vector.js';
+import { type DataWindow, dataVector, project } from './data-vector.js';
 
 const reduction = inventedReduction(redoxinLike(), { noise: 0.001 });
-const window = { kRange: [3, 12], rRange: [1, 3.5], kWeight: 3 } as const;
+const window: DataWindow = { kRange: [3, 12], rRange: [1, 3.5], kWeight: 3 };
 
 test('it holds as many numbers as the window has independent points', () => {
   const { independentPoints, size } = dataVector(reduction, window, 0.1, 'x');
@@ -42,7 +42,7 @@ test('model error: at η the data alone weigh N_idp/η², noise aside', () => {
 });
 
 describe('refused, with what would be right', () => {
-  const refused: [string, Partial<typeof window> & object, RegExp][] = [
+  const refused: [string, Partial<DataWindow>, RegExp][] = [
     ['window beyond the data', { kRange: [3, 18] }, /must lie inside the data, which run from 0\.50 to 13\.00/],
     ['too few independent points', { kRange: [3, 5], rRange: [1, 2] }, /at least 4 are needed/],
     ['falling range', { kRange: [12, 3] }, /must rise/],
