@@ -4,8 +4,10 @@
  * of a metal unless as close as a hydride; metals are bonded to metals only where they touch (slack 0.2 Å).
  */
 import { covalentRadius, elementBySymbol } from '../elements/index.js';
-import { LONGEST_LINK } from './pdb-links.js';
 import type { Link, Site, SiteAtom } from './types.js';
+
+/** Å: atoms on special positions are moved onto them, and no two images of an atom bond at lengths this near by chance only. */
+const SAME_LENGTH = 0.1;
 
 const NONMETALS = new Set('H He B C N O F Ne Si P S Cl Ar Ge As Se Br Kr Te I Xe At Rn'.split(' '));
 
@@ -29,12 +31,21 @@ export function shortestBond(one: string, other: string): number {
 /**
  * The atoms bonded to the absorber, nearest first.
  *
- * @param links  bonds the file states: they count even where they are longer than radii allow, up to LONGEST_LINK
+ * @param links  bonds the file states: they count even where they are longer than radii allow; the length tells the image meant
  */
 export function coordinationShell(site: Site, links: readonly Link[] = []): readonly SiteAtom[] {
   const own = site.atoms[0]!.source;
-  const linked = new Set(links.flatMap(({ sources: [a, b] }) => (a === own ? [b] : b === own ? [a] : [])));
-  const isLinked = (atom: SiteAtom): boolean => linked.has(atom.source) && atom.distance <= LONGEST_LINK;
+  const lengths = new Map<number, number[]>();
+  for (const {
+    sources: [a, b],
+    length,
+  } of links) {
+    if (a !== own && b !== own) continue;
+    const other = a === own ? b : a;
+    lengths.set(other, [...(lengths.get(other) ?? []), length]);
+  }
+  const isLinked = (atom: SiteAtom): boolean =>
+    lengths.get(atom.source)?.some((length) => Math.abs(length - atom.distance) < SAME_LENGTH) ?? false;
   const shell = site.atoms.slice(1).filter((atom) => atom.distance <= longestBond(site.element, atom.element) || isLinked(atom));
   // With ligands present, a metal behind them is a neighbour, not a ligand (oxo-bridged pairs, 2.7 Å), unless the file says so.
   const ligands = shell.filter((atom) => !isMetal(atom.element) || isLinked(atom));

@@ -32,3 +32,27 @@ test('a link to an atom that is not there, or is far away, is said with its line
   expect(far.links).toBeUndefined();
   expect(far.diagnostics).toContainEqual(expect.objectContaining({ code: 'link-too-long', message: expect.stringContaining('9.0 Å') }));
 });
+
+test('a CONECT counts like a link; serials of nobody and bonds across the file are said', () => {
+  expect(bonded(`${file()}\nCONECT    1    2    3`)).toEqual(['S', 'O']);
+  const bad = readStructure(`${file()}\nCONECT    1    9\nCONECT    1    4`);
+  expect(bad.links).toBeUndefined();
+  expect(bad.diagnostics.map(({ code, line }) => [code, line])).toEqual([
+    ['conect-without-atom', 5],
+    ['conect-too-long', 5],
+  ]);
+});
+
+test('a link to a symmetry copy bonds that image alone', () => {
+  // P 1 with a = 12 Å: the oxygen at −9 Å has an image at 3 Å, too long a bond by radii; its own place stays unbonded.
+  const cell = 'CRYST1   12.000   20.000   20.000  90.00  90.00  90.00 P 1           1';
+  const record = 'LINK        ZN    ZN A   1                 OD2 ASP A   3     1555   2655  3.00';
+  const without = describeSites(readStructure(`${cell}\n${file()}`), { absorber: 'Zn', radius: 10 }).sites[0]!;
+  const site = describeSites(readStructure(`${cell}\n${file(record)}`), { absorber: 'Zn', radius: 10 }).sites[0]!;
+  const shell = (one: typeof site) => one.neighbours.flatMap(({ label, symmetry, bonded: is }) => (is ? [`${label} ${symmetry}`] : []));
+  expect(shell(without)).toEqual(['SG CYS A2 x,y,z']);
+  expect(shell(site)).toEqual(['SG CYS A2 x,y,z', 'OD2 ASP A3 x+1,y,z']);
+  const far = readStructure(`${cell.replace('12.000', '16.000')}\n${file(record)}`);
+  expect(far.links).toBeUndefined();
+  expect(far.diagnostics).toContainEqual(expect.objectContaining({ code: 'link-too-long', line: 2 }));
+});

@@ -1,6 +1,7 @@
 /** LINK records of a PDB file: bonds its author states, which distances alone might not show (format 3.3, columns as there). */
 import type { Diagnostic } from '../errors.js';
-import type { Atom, Link } from './types.js';
+import { cellGeometry, distance, transform } from './cell.js';
+import type { Atom, Cell, Link, SymmetryOperator, Vec3 } from './types.js';
 
 /** A stated bond longer than this, Å, is a slip of the file and not a bond. */
 export const LONGEST_LINK = 4;
@@ -18,8 +19,19 @@ interface LinkEnd {
 
 interface LinkRecord {
   readonly ends: readonly [LinkEnd, LinkEnd];
+  /** Å, as stated; NaN where it is not. */
+  readonly length: number;
   readonly line: number;
 }
+
+/** What repeats the atoms of a file. */
+interface Crystal {
+  readonly cell: Cell;
+  readonly operators: readonly SymmetryOperator[];
+}
+
+/** Å: a stated length names the image it belongs to this well. */
+const SAME_LENGTH = 0.1;
 
 export class PdbLinks {
   private readonly records: LinkRecord[] = [];
@@ -35,11 +47,14 @@ export class PdbLinks {
       number: field(at + 10, at + 14).replace(/\s/g, ''),
       symmetry: field(...symmetry) || '1555',
     });
-    this.records.push({ ends: [end(13, [60, 65]), end(43, [67, 72])], line });
+    this.records.push({ ends: [end(13, [60, 65]), end(43, [67, 72])], length: Number(field(74, 78) || Number.NaN), line });
   }
 
-  /** The links between the atoms read; what names no atom, or atoms too far apart, is said and left out. */
-  resolve(atoms: readonly Atom[], diagnostics: Diagnostic[]): Link[] {
+  /**
+   * The links between the atoms read; what names no atom, or atoms too far apart, is said and left out. A link to a symmetry copy
+   * goes to the image at the stated length, else to the nearest: operators are numbered by the file's own list, positions are not.
+   */
+  resolve(atoms: readonly Atom[], crystal: Crystal | undefined, diagnostics: Diagnostic[]): Link[] {
     if (this.records.length === 0) return [];
     const byPlace = new Map<string, number[]>();
     atoms.forEach(({ name, residue }, source) => {
@@ -47,7 +62,7 @@ export class PdbLinks {
       const place = `${name}|${residue.name}|${residue.chain}|${residue.number}${residue.insertion}`;
       byPlace.set(place, [...(byPlace.get(place) ?? []), source]);
     });
-    return this.records.flatMap(({ ends, line }) => {
+    return this.records.flatMap(({ ends, length, line }) => {
       const [first, second] = ends.map(({ name, residue, chain, number, alternate }) => {
         const found = byPlace.get(`${name}|${residue}|${chain}|${number}`) ?? [];
         return alternate === '' ? found : found.filter((source) => atoms[source]!.alternate === alternate);
@@ -61,14 +76,18 @@ export class PdbLinks {
         });
         return [];
       }
-      const links = first.flatMap((a) => second.map((b): Link => ({ sources: [a, b] })));
-      if (ends[0].symmetry !== ends[1].symmetry) return links;
-      const near = links.filter(({ sources: [a, b] }) => apart(atoms[a]!, atoms[b]!) <= LONGEST_LINK);
+      const isCopy = ends[0].symmetry !== ends[1].symmetry && crystal !== undefined;
+      const links = first.flatMap((a) =>
+        second.map((b): Link => {
+          const [from, to] = [atoms[a]!.position, atoms[b]!.position];
+          return { sources: [a, b], length: isCopy ? imageDistance(from, to, crystal, length) : distance(from, to) };
+        }),
+      );
+      const near = links.filter((one) => one.length <= LONGEST_LINK);
       if (near.length === 0) {
-        const length = apart(atoms[first[0]!]!, atoms[second[0]!]!).toFixed(1);
         diagnostics.push({
           code: 'link-too-long',
-          message: `LINK between ${words}: they are ${length} Å apart, which is no bond; the link is left out`,
+          message: `LINK between ${words}: they are ${links[0]!.length.toFixed(1)} Å apart${isCopy ? ' at the nearest' : ''}, which is no bond; the link is left out`,
           line,
         });
       }
@@ -77,4 +96,23 @@ export class PdbLinks {
   }
 }
 
-const apart = ({ position: p }: Atom, { position: q }: Atom): number => Math.hypot(p[0] - q[0], p[1] - q[1], p[2] - q[2]);
+/** Å between an atom and an image of another that is not the other itself: the image whose distance was stated, else the nearest. */
+function imageDistance(from: Vec3, to: Vec3, { cell, operators }: Crystal, stated: number): number {
+  const { toCartesian, toFractional } = cellGeometry(cell);
+  const [f, g] = [transform(toFractional, from), transform(toFractional, to)];
+  let nearest = Infinity;
+  for (const { rotation: m, translation: t } of operators) {
+    const delta = [0, 1, 2].map((i) => m[3 * i]! * g[0] + m[3 * i + 1]! * g[1] + m[3 * i + 2]! * g[2] + t[i]! - f[i]!);
+    const base = delta.map((x) => x - Math.round(x));
+    // The nearest in a skewed cell may lie one translation on.
+    for (let n = 0; n < 27; n++) {
+      const shift = [(n % 3) - 1, (Math.floor(n / 3) % 3) - 1, Math.floor(n / 9) - 1];
+      const image = base.map((x, i) => x + shift[i]!) as unknown as Vec3;
+      if (m[0] === 1 && m[4] === 1 && m[8] === 1 && image.every((x, i) => Math.abs(x - (g[i]! - f[i]!)) < 1e-6)) continue;
+      const apart = Math.hypot(...transform(toCartesian, image));
+      if (Math.abs(apart - stated) <= SAME_LENGTH) return apart;
+      nearest = Math.min(nearest, apart);
+    }
+  }
+  return nearest;
+}

@@ -10,6 +10,7 @@ import { chargeOf, elementOfPdbName } from './labels.js';
 import { Lines } from './lines.js';
 import { decimalAt } from './numbers.js';
 import { IDENTITY } from './operators.js';
+import { PdbConnections } from './pdb-connections.js';
 import { PdbLinks } from './pdb-links.js';
 import { PdbStatistics } from './pdb-statistics.js';
 import { spaceGroupByName } from './space-groups.js';
@@ -27,6 +28,7 @@ export function readPdb(text: string): Structure {
   const diagnostics: Diagnostic[] = [];
   const statistics = new PdbStatistics();
   const linkRecords = new PdbLinks();
+  const connections = new PdbConnections();
   const reader = new AtomReader(text, diagnostics);
   const frames: Atom[][] = [[]];
   let crystal: Crystal | undefined;
@@ -61,6 +63,9 @@ export function readPdb(text: string): Structure {
       case 'LINK':
         linkRecords.take(text.slice(start, end), lines.number);
         break;
+      case 'CONECT':
+        connections.take(text.slice(start, end), lines.number);
+        break;
       case 'EXPDTA':
       case 'REMARK':
         statistics.take(text.slice(start, end));
@@ -75,7 +80,7 @@ export function readPdb(text: string): Structure {
   checkOccupancySums(first, diagnostics);
   checkDuplicates(first, diagnostics);
   const known = statistics.result();
-  const links = linkRecords.resolve(first, diagnostics);
+  const links = [...linkRecords.resolve(first, crystal, diagnostics), ...connections.resolve(text, first, diagnostics)];
   return {
     format: 'pdb',
     title: title || header,

@@ -63,6 +63,8 @@ export interface Atom {
 export interface Link {
   /** Indices into Structure.atoms. */
   readonly sources: readonly [number, number];
+  /** Å; tells which image of the other atom is meant when the bond goes to a symmetry copy. */
+  readonly length: number;
 }
 
 /** What a file states about how well its coordinates are known. */
@@ -91,7 +93,7 @@ export interface Structure {
   readonly operators: readonly SymmetryOperator[];
   readonly spaceGroup?: string;
   readonly statistics?: RefinementStatistics;
-  /** Bonds the file states (LINK of a PDB); absent where it states none. */
+  /** Bonds the file states (LINK and CONECT of a PDB); absent where it states none. */
   readonly links?: readonly Link[];
   readonly diagnostics: readonly Diagnostic[];
 }
