@@ -5,15 +5,11 @@
  */
 import { distance } from './cell.js';
 import type { Image, Images } from './images.js';
-import { isOriented, type LocalDisorder } from './orientations.js';
+import { isOriented, type LocalDisorder, orientedAtoms, SAME_SPOT, SLACK } from './orientations.js';
 import type { Atom, Structure } from './types.js';
 
-/** Å: closer than any two atoms that are not hydrogen; the shortest bond, N≡N, is 1.1. */
-const SAME_SPOT = 0.8;
 /** Å: alternates of two residues that touch so, and carry the same labels, were refined together. */
 const IN_CONTACT = 4;
-/** Occupancies are rounded to two digits. */
-const SLACK = 0.05;
 
 export interface DisorderGroup {
   readonly labels: readonly string[];
@@ -25,6 +21,8 @@ export interface Disorder {
   readonly groups: readonly DisorderGroup[];
   /** Group of each atom of the file, −1 for none. */
   readonly groupOf: Int32Array;
+  /** 1 for every atom that excludes its own images by symmetry (orientations.ts). */
+  readonly oriented: Uint8Array;
   /** Label of each atom within its group. */
   readonly labelOf: (source: number) => string;
 }
@@ -60,7 +58,7 @@ export function findDisorder(structure: Structure, images: Images): Disorder {
     for (const source of members) groupOf[source] = groups.length;
     groups.push({ labels, weights });
   }
-  return { groups, groupOf, labelOf };
+  return { groups, groupOf, oriented: orientedAtoms(atoms, images), labelOf };
 }
 
 const labelIn = (atom: Atom, source: number): string =>

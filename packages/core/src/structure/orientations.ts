@@ -1,6 +1,7 @@
 /**
- * Disorder about a symmetry element (a CIF's disorder group below 0, "PART −1"): an atom and its own image by the site symmetry are
- * never there together. Of the copies of such a group that get in each other's way, one is present, all its atoms with it.
+ * Disorder about a symmetry element (a CIF's disorder group below 0, "PART −1"; or an atom half there beside its own image, without a
+ * word): an atom and its own image by the site symmetry are never there together. Of the copies of such a group that get in each
+ * other's way, one is present, all its atoms with it.
  */
 import { longestBond } from './bonding.js';
 import { distance } from './cell.js';
@@ -21,16 +22,32 @@ export interface LocalDisorder {
   readonly labelOf: (image: Image) => string;
 }
 
-/** Whether an atom is disordered about a symmetry element. */
+/** Å: closer than any two atoms that are not hydrogen. */
+export const SAME_SPOT = 0.8;
+/** Occupancies are rounded to two digits. */
+export const SLACK = 0.05;
+
+/** Whether a CIF says that an atom is disordered about a symmetry element. */
 export const isOriented = ({ alternate, residue }: Atom): boolean =>
   residue === undefined && alternate !== undefined && /^-\d/.test(alternate);
+
+/** 1 for every atom in general position that excludes its own images. */
+export function orientedAtoms(atoms: readonly Atom[], images: Images): Uint8Array {
+  return Uint8Array.from(atoms, (atom, source) => {
+    const occupancy = images.occupancy[source]!;
+    if (!images.isCrystal || images.multiplicity[source] !== images.order || !(occupancy > 0)) return 0;
+    if (isOriented(atom)) return 1;
+    if (atom.alternate !== undefined || atom.element === 'H' || occupancy > 0.5 + SLACK) return 0;
+    return images.around(images.position(source), SAME_SPOT).some((image) => image.source === source && image.distance > 1e-6) ? 1 : 0;
+  });
+}
 
 /**
  * Adds to the disorder of a structure one group for every place of a cluster where copies by symmetry exclude each other. Atoms on
  * the symmetry element itself belong to every copy and to no group. Cost: square of the number of such atoms in the cluster.
  */
 export function localDisorder(disorder: Disorder, atoms: readonly Atom[], images: Images, cluster: readonly Image[]): LocalDisorder {
-  const oriented = cluster.filter(({ source }) => isOriented(atoms[source]!) && images.multiplicity[source] === images.order);
+  const oriented = cluster.filter(({ source }) => disorder.oriented[source] === 1);
   if (oriented.length === 0) {
     return {
       groups: disorder.groups,
@@ -38,7 +55,7 @@ export function localDisorder(disorder: Disorder, atoms: readonly Atom[], images
       labelOf: ({ source }) => disorder.labelOf(source),
     };
   }
-  const copyOf = ({ source, symmetry }: Image): string => `${atoms[source]!.alternate} at ${symmetry}`;
+  const copyOf = ({ source, symmetry }: Image): string => `${atoms[source]!.alternate ?? atoms[source]!.name} at ${symmetry}`;
   const root = oriented.map((_, i) => i);
   const find = (i: number): number => {
     let at = i;
