@@ -14,7 +14,7 @@ import { type Posterior, posteriorOf } from './posterior-shape.js';
 import { powerAgainst } from './power.js';
 import { rivalsOf } from './rivals.js';
 import { prepareTrial, type SpectrumRequest, type Trial } from './trial.js';
-import { type TrialModel, trialModel } from './trial-model.js';
+import { carriedOver, type TrialModel, trialModel } from './trial-model.js';
 import type { CandidateJudgement, Comparison, FittedParameter, JudgeOptions, RivalResult } from './types.js';
 import { valencesOf } from './valence.js';
 
@@ -64,7 +64,7 @@ export function judgeCandidate(
   const finding = findingWord(numbers.p, numbers.pDistances, numbers.power, strained);
   const evidence = logEvidence(best, model.bounded);
   const beforeRivals = clock.now();
-  const rivals = options.rivals ? judgeRivals(trial, spread, degrees, evidence, clock, running) : [];
+  const rivals = options.rivals ? judgeRivals(trial, model, best, spread, degrees, evidence, clock, running) : [];
   clock.rivals += clock.now() - beforeRivals;
   const kMax = Math.max(...requests.map(({ vector }) => vector.window.kRange[1]));
   const elements = [
@@ -142,14 +142,24 @@ function describeParameters({ list }: TrialModel, { z }: Minimum, { sd }: Poster
   }));
 }
 
-function judgeRivals(trial: Trial, spread: number, degrees: number, evidence: number, clock: StageClock, running?: Running): RivalResult[] {
+/** Each rival begins where the candidate ended: what the two share is known by its key. */
+function judgeRivals(
+  trial: Trial,
+  held: TrialModel,
+  best: Minimum,
+  spread: number,
+  degrees: number,
+  evidence: number,
+  clock: StageClock,
+  running?: Running,
+): RivalResult[] {
   const results: RivalResult[] = [];
   for (const { label, kind, spectra } of rivalsOf(trial, clock, running)) {
     running?.onProgress?.(`rival: ${label}`, 0);
     const model = trialModel(spectra, spread);
-    const [best] = bestPoints(model, running);
-    const p = chiSquaredAbove(best!.x, degrees);
-    results.push({ label, kind, x: best!.x, p, logEvidence: logEvidence(best!, model.bounded) - evidence, excluded: p < CONSISTENT });
+    const found = minimise(model, carriedOver(model, held, best), undefined, running);
+    const p = chiSquaredAbove(found.x, degrees);
+    results.push({ label, kind, x: found.x, p, logEvidence: logEvidence(found, model.bounded) - evidence, excluded: p < CONSISTENT });
   }
   return results.sort((a, b) => b.logEvidence - a.logEvidence);
 }

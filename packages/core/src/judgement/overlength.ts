@@ -7,7 +7,7 @@ import type { PathClass } from '../predict/unknowns.js';
 import { type Minimum, minimise } from './minimise.js';
 import { covarianceOf } from './posterior.js';
 import type { Trial, TrialSpectrum } from './trial.js';
-import { type Freedom, type TrialModel, trialModel } from './trial-model.js';
+import { carriedOver, type Freedom, type TrialModel, trialModel } from './trial-model.js';
 import type { Overlength, ShellStretch } from './types.js';
 
 /** A lengthening counts from here, in standard deviations and in Å. */
@@ -117,13 +117,8 @@ export function describeClass(spectrum: TrialSpectrum, kind: PathClass): { label
 /** The best fit with distances free, from several starts; every parameter known by its key begins where the held fit ended. */
 function refit(trial: Trial, held: TrialModel, best: Minimum, spread: number, freedom: Freedom): { model: TrialModel; minimum: Minimum } {
   const model = trialModel(trial.spectra, spread, freedom);
-  const begin = new Float64Array(model.parameters);
-  model.list.forEach(({ key }, p) => {
-    const known = held.indexOf(key);
-    if (known !== undefined) begin[p] = best.z[known]!;
-  });
   const free = model.list.flatMap(({ name }, p) => (name === 'free-stretch' || name === 'free-shift' ? [p] : []));
-  let minimum = minimise(model, begin);
+  let minimum = minimise(model, carriedOver(model, held, best));
   for (const p of free) {
     const { sd } = model.list[p]!;
     const looks = (freedom === 'stretch' ? STRETCH_STARTS : SHIFT_STARTS).map((start) => {

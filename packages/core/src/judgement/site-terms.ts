@@ -5,10 +5,12 @@
  *   σ² = σ²_thermal t + e,   C₃ = C₃,thermal t²,   δ = Σ_p c_p z_p,   k² = k²_data − E0/3.81
  *
  * with t the thermal scale, e the extra static σ² and δ the change of the half length (spectrum/path-sum.ts says where the phases come
- * from; the amplitude's 1/R² and mean free path follow δ to first order). Å, Å⁻¹, Å², eV.
+ * from; the amplitude's 1/R² and mean free path follow δ to first order). The disorder factor is smooth in k and taken from every
+ * sixth point (sparse-nodes.ts). Å, Å⁻¹, Å², eV.
  */
 import type { SiteSignal } from '../predict/site-signal.js';
 import type { OriginSignals } from './origin-signals.js';
+import { SparseNodes } from './sparse-nodes.js';
 
 /** How the parameters act on the paths of one site; indices into the parameter vector. */
 export interface SiteUnknowns {
@@ -37,6 +39,11 @@ export class SiteTerms {
   private readonly c3: Float64Array;
   private readonly atOrigin: OriginSignals;
   private readonly work: Float64Array;
+  private readonly nodes: SparseNodes;
+  private readonly factorRe: Float64Array;
+  private readonly factorIm: Float64Array;
+  /** Of the path at work: Å², Å³, Å, Å⁻¹. */
+  private readonly path = { sigma2: 0, c3: 0, shift: 0, inverseR: 0 };
 
   /**
    * @param atOrigin  amplitudes on the grid of the data; models of one site may share it
@@ -50,15 +57,73 @@ export class SiteTerms {
     this.sigma2 = sigma2;
     this.c3 = c3;
     this.work = new Float64Array(3 * atOrigin.kTheory.length);
+    this.nodes = new SparseNodes(atOrigin.kTheory.length);
+    this.factorRe = new Float64Array(this.nodes.at.length);
+    this.factorIm = new Float64Array(this.nodes.at.length);
   }
 
   /** Adds the site's part to chi (nk) and, if given, to the derivatives by z, row-major (parameters, nk). */
-  addTo(chi: Float64Array, { z, value, slope }: ParameterValues, jacobian?: Float64Array): void {
-    const { unknowns, atOrigin, work, signal } = this;
+  addTo(chi: Float64Array, values: ParameterValues, jacobian?: Float64Array): void {
+    const { unknowns, atOrigin, signal } = this;
+    atOrigin.moveTo(values.value[unknowns.energyOrigin]!);
+    for (let j = 0; j < signal.signals.length; j++) {
+      this.prepareFactor(j, values);
+      if (jacobian) this.addWithSlopes(j, chi, values, jacobian);
+      else this.add(j, chi);
+    }
+  }
+
+  /** Size, σ², C₃ and shift of path j, and the disorder factor at the nodes. */
+  private prepareFactor(j: number, { z, value }: ParameterValues): void {
+    const { unknowns, atOrigin, signal, nodes, factorRe, factorIm } = this;
     const { shiftStart, shiftParameter, shiftCoefficient } = unknowns;
-    atOrigin.moveTo(value[unknowns.energyOrigin]!);
-    const { kTheory: k, inverseLambda, inverseLambdaSlope, kPerEv, re, im, dRe, dIm } = atOrigin;
-    const nk = k.length;
+    const { degeneracy, halfLength } = signal.signals[j]!.path;
+    const t = value[unknowns.thermalScale[j]!]!;
+    const sigma2 = this.sigma2[j]! * t + value[unknowns.extraStatic[j]!]!;
+    const c3 = this.c3[j]! * t * t;
+    let shift = 0;
+    for (let s = shiftStart[j]!; s < shiftStart[j + 1]!; s++) shift += shiftCoefficient[s]! * z[shiftParameter[s]!]!;
+    const size = signal.site.weight * value[unknowns.amplitude]! * degeneracy;
+    this.path.sigma2 = sigma2;
+    this.path.c3 = c3;
+    this.path.shift = shift;
+    this.path.inverseR = 1 / halfLength;
+    const { kTheory, inverseLambda } = atOrigin;
+    for (let m = 0; m < nodes.at.length; m++) {
+      const i = nodes.at[m]!;
+      const k = kTheory[i]!;
+      const inverse = 1 / halfLength + inverseLambda[i]!;
+      const damping = size * Math.exp(-2 * sigma2 * k * k - 2 * shift * inverse);
+      const phase = 2 * k * shift - 4 * k * sigma2 * inverse - (4 / 3) * c3 * k * k * k;
+      factorRe[m] = damping * Math.cos(phase);
+      factorIm[m] = damping * Math.sin(phase);
+    }
+  }
+
+  private add(j: number, chi: Float64Array): void {
+    const { nodes, factorRe, factorIm } = this;
+    const { first, weights } = nodes;
+    const { re, im } = this.atOrigin;
+    const base = j * chi.length;
+    for (let i = 0; i < chi.length; i++) {
+      const m = first[i]!;
+      const w = 4 * i;
+      const w0 = weights[w]!;
+      const w1 = weights[w + 1]!;
+      const w2 = weights[w + 2]!;
+      const w3 = weights[w + 3]!;
+      const c = w0 * factorRe[m]! + w1 * factorRe[m + 1]! + w2 * factorRe[m + 2]! + w3 * factorRe[m + 3]!;
+      const s = w0 * factorIm[m]! + w1 * factorIm[m + 1]! + w2 * factorIm[m + 2]! + w3 * factorIm[m + 3]!;
+      chi[i]! += re[base + i]! * s + im[base + i]! * c;
+    }
+  }
+
+  private addWithSlopes(j: number, chi: Float64Array, { value, slope }: ParameterValues, jacobian: Float64Array): void {
+    const { unknowns, atOrigin, nodes, factorRe, factorIm, work } = this;
+    const { sigma2, c3, shift, inverseR } = this.path;
+    const { first, weights } = nodes;
+    const { kTheory, inverseLambda, inverseLambdaSlope, kPerEv, re, im, dRe, dIm } = atOrigin;
+    const nk = kTheory.length;
     const dSigma = work.subarray(0, nk);
     const dCubic = work.subarray(nk, 2 * nk);
     const dShift = work.subarray(2 * nk, 3 * nk);
@@ -66,49 +131,42 @@ export class SiteTerms {
     const amplitudeRow = unknowns.amplitude * nk;
     const perEv = slope[unknowns.energyOrigin]!;
     const perAmplitude = slope[unknowns.amplitude]! / value[unknowns.amplitude]!;
-    for (let j = 0; j < signal.signals.length; j++) {
-      const { degeneracy, halfLength } = signal.signals[j]!.path;
-      const t = value[unknowns.thermalScale[j]!]!;
-      const sigma2 = this.sigma2[j]! * t + value[unknowns.extraStatic[j]!]!;
-      const c3 = this.c3[j]! * t * t;
-      let shift = 0;
-      for (let s = shiftStart[j]!; s < shiftStart[j + 1]!; s++) shift += shiftCoefficient[s]! * z[shiftParameter[s]!]!;
-      const size = signal.site.weight * value[unknowns.amplitude]! * degeneracy;
-      const base = j * nk;
-      for (let i = 0; i < nk; i++) {
-        const ki = k[i]!;
-        const k2 = ki * ki;
-        const inverse = 1 / halfLength + inverseLambda[i]!;
-        const damping = size * Math.exp(-2 * sigma2 * k2 - 2 * shift * inverse);
-        const phase = 2 * ki * shift - 4 * ki * sigma2 * inverse - (4 / 3) * c3 * k2 * ki;
-        const c = damping * Math.cos(phase);
-        const s = damping * Math.sin(phase);
-        const a = re[base + i]!;
-        const b = im[base + i]!;
-        const uRe = a * c - b * s;
-        const uIm = a * s + b * c;
-        chi[i]! += uIm;
-        if (jacobian === undefined) continue;
-        dSigma[i] = -2 * k2 * uIm - 4 * ki * inverse * uRe;
-        dCubic[i] = -(4 / 3) * k2 * ki * uRe;
-        dShift[i] = 2 * ki * uRe - 2 * inverse * uIm;
-        const rate = inverseLambdaSlope[i]!;
-        const dDamping = -4 * sigma2 * ki - 2 * shift * rate;
-        const dPhase = 2 * shift - 4 * sigma2 * (inverse + ki * rate) - 4 * c3 * k2;
-        const direct = dRe[base + i]! * s + dIm[base + i]! * c;
-        jacobian[originRow + i]! += perEv * (direct + kPerEv[i]! * (dDamping * uIm + dPhase * uRe));
-        jacobian[amplitudeRow + i]! += perAmplitude * uIm;
-      }
-      if (jacobian === undefined) continue;
-      const thermal = unknowns.thermalScale[j]!;
-      const bySigma = this.sigma2[j]! * slope[thermal]!;
-      const byCubic = 2 * this.c3[j]! * t * slope[thermal]!;
-      addScaled(jacobian, thermal * nk, dSigma, bySigma, nk);
-      if (byCubic !== 0) addScaled(jacobian, thermal * nk, dCubic, byCubic, nk);
-      addScaled(jacobian, unknowns.extraStatic[j]! * nk, dSigma, slope[unknowns.extraStatic[j]!]!, nk);
-      for (let s = shiftStart[j]!; s < shiftStart[j + 1]!; s++)
-        addScaled(jacobian, shiftParameter[s]! * nk, dShift, shiftCoefficient[s]!, nk);
+    const base = j * nk;
+    for (let i = 0; i < nk; i++) {
+      const m = first[i]!;
+      const w = 4 * i;
+      const w0 = weights[w]!;
+      const w1 = weights[w + 1]!;
+      const w2 = weights[w + 2]!;
+      const w3 = weights[w + 3]!;
+      const c = w0 * factorRe[m]! + w1 * factorRe[m + 1]! + w2 * factorRe[m + 2]! + w3 * factorRe[m + 3]!;
+      const s = w0 * factorIm[m]! + w1 * factorIm[m + 1]! + w2 * factorIm[m + 2]! + w3 * factorIm[m + 3]!;
+      const a = re[base + i]!;
+      const b = im[base + i]!;
+      const uRe = a * c - b * s;
+      const uIm = a * s + b * c;
+      chi[i]! += uIm;
+      const k = kTheory[i]!;
+      const k2 = k * k;
+      const inverse = inverseR + inverseLambda[i]!;
+      const rate = inverseLambdaSlope[i]!;
+      dSigma[i] = -2 * k2 * uIm - 4 * k * inverse * uRe;
+      dCubic[i] = -(4 / 3) * k2 * k * uRe;
+      dShift[i] = 2 * k * uRe - 2 * inverse * uIm;
+      const dDamping = -4 * sigma2 * k - 2 * shift * rate;
+      const dPhase = 2 * shift - 4 * sigma2 * (inverse + k * rate) - 4 * c3 * k2;
+      const direct = dRe[base + i]! * s + dIm[base + i]! * c;
+      jacobian[originRow + i]! += perEv * (direct + kPerEv[i]! * (dDamping * uIm + dPhase * uRe));
+      jacobian[amplitudeRow + i]! += perAmplitude * uIm;
     }
+    const thermal = unknowns.thermalScale[j]!;
+    const bySigma = this.sigma2[j]! * slope[thermal]!;
+    const byCubic = 2 * this.c3[j]! * value[thermal]! * slope[thermal]!;
+    addScaled(jacobian, thermal * nk, dSigma, bySigma, nk);
+    if (byCubic !== 0) addScaled(jacobian, thermal * nk, dCubic, byCubic, nk);
+    addScaled(jacobian, unknowns.extraStatic[j]! * nk, dSigma, slope[unknowns.extraStatic[j]!]!, nk);
+    for (let s = unknowns.shiftStart[j]!; s < unknowns.shiftStart[j + 1]!; s++)
+      addScaled(jacobian, unknowns.shiftParameter[s]! * nk, dShift, unknowns.shiftCoefficient[s]!, nk);
   }
 }
 

@@ -86,6 +86,14 @@ export function trialModel(spectra: readonly TrialSpectrum[], spread: number, fr
   };
 }
 
+/** A start for one model where another ended: parameters both have keep their z, the others begin at what is expected. */
+export function carriedOver(model: TrialModel, from: TrialModel, { z }: { readonly z: Float64Array }): Float64Array {
+  return Float64Array.from(model.list, ({ key }) => {
+    const known = from.indexOf(key);
+    return known === undefined ? 0 : z[known]!;
+  });
+}
+
 /** Registers the unknowns of one site and says how each acts on its paths. */
 function unknownsOf(
   parameters: ParameterList,

@@ -6,8 +6,8 @@
 export class CubicSpline {
   readonly x: Float64Array;
   readonly y: Float64Array;
-  /** Second derivatives at the knots. */
-  private readonly m: Float64Array;
+  /** Second derivatives at the knots (n). */
+  readonly m: Float64Array;
   /** 1/step where the knots are evenly spaced (to 1e-9), else 0: the interval is then found by division. */
   private readonly perStep: number;
 

@@ -8,6 +8,7 @@
  */
 import { perAngstromFromPerBohr } from '../constants.js';
 import { CubicSpline } from '../numerics/spline.js';
+import { SplineStencil } from '../numerics/spline-stencil.js';
 import type { Path } from '../paths/types.js';
 import type { ScatteringTable } from '../scattering/types.js';
 
@@ -26,23 +27,20 @@ export class InterstitialWave {
     return this.re.at(k);
   }
 
-  /** d Re p/dk, no unit. */
-  realSlope(k: number): number {
-    return this.re.slopeAt(k);
-  }
-
   /** Mean free path λ = 1/Im p, Å: the amplitude of a path falls as e^{−2R/λ}. */
   meanFreePath(k: number): number {
     return 1 / this.im.at(k);
   }
 
-  /** Im p = 1/λ, Å⁻¹, and its slope by k: what derivatives want. */
-  inverseMeanFreePath(k: number): number {
-    return this.im.at(k);
+  /** Where the given k lie among the knots that all signals of the table share. */
+  stencil(k: Float64Array): SplineStencil {
+    return new SplineStencil(this.re.x, k);
   }
 
-  inverseMeanFreePathSlope(k: number): number {
-    return this.im.slopeAt(k);
+  /** Re p and 1/λ = Im p at the points of a stencil, and their slopes by k, Å⁻¹ and no unit (n). */
+  evaluate(stencil: SplineStencil, pRe: Float64Array, pSlope: Float64Array, inverseLambda: Float64Array, inverseSlope: Float64Array): void {
+    stencil.evaluate(this.re, pRe, pSlope);
+    stencil.evaluate(this.im, inverseLambda, inverseSlope);
   }
 }
 
@@ -85,17 +83,31 @@ export class PathSignal {
     }
   }
 
-  /** As `evaluate`, and dA/dk into dRe, dIm (n). */
-  evaluateWithSlope(k: Float64Array, re: Float64Array, im: Float64Array, dRe: Float64Array, dIm: Float64Array): void {
-    const R = this.path.halfLength;
-    for (let i = 0; i < k.length; i++) {
-      const ki = k[i]!;
-      const b = this.bRe.at(ki);
-      const d = this.bIm.at(ki);
-      const phase = 2 * this.wave.real(ki) * R;
-      const rate = 2 * this.wave.realSlope(ki) * R;
-      const db = this.bRe.slopeAt(ki) - rate * d;
-      const dd = this.bIm.slopeAt(ki) + rate * b;
+  /**
+   * A and dA/dk at many k, into re, im, dRe, dIm (n).
+   *
+   * @param stencil  of the knots at the wanted k
+   * @param pRe      Re p there, Å⁻¹, and its slope by k (n)
+   */
+  evaluateWithSlope(
+    stencil: SplineStencil,
+    pRe: Float64Array,
+    pSlope: Float64Array,
+    re: Float64Array,
+    im: Float64Array,
+    dRe: Float64Array,
+    dIm: Float64Array,
+  ): void {
+    const twoR = 2 * this.path.halfLength;
+    stencil.evaluate(this.bRe, re, dRe);
+    stencil.evaluate(this.bIm, im, dIm);
+    for (let i = 0; i < re.length; i++) {
+      const b = re[i]!;
+      const d = im[i]!;
+      const phase = twoR * pRe[i]!;
+      const rate = twoR * pSlope[i]!;
+      const db = dRe[i]! - rate * d;
+      const dd = dIm[i]! + rate * b;
       const c = Math.cos(phase);
       const s = Math.sin(phase);
       re[i] = b * c - d * s;
