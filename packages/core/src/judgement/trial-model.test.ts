@@ -37,8 +37,8 @@ test.each<Freedom>(['none', 'stretch', 'classes'])('derivatives agree with diffe
     const largest = Math.max(...jacobian.subarray(p * n, (p + 1) * n).map(Math.abs));
     for (let i = 0; i < n; i++) {
       const difference = (sides[1]![i]! - sides[0]![i]!) / (2 * step);
-      // disorder factors are interpolated in k to 3e-5, amplitudes in E0 to 2e-4 (their slopes to 1e-4): an analytic slip shows at 1e-2
-      expect(Math.abs(difference - jacobian[p * n + i]!), model.list[p]!.key).toBeLessThan(1e-4 * largest + 1e-6);
+      // disorder factors are interpolated in k, at the shifts of 0.3 Å drawn here to 3e-4: an analytic slip shows at 1e-2
+      expect(Math.abs(difference - jacobian[p * n + i]!), model.list[p]!.key).toBeLessThan(5e-4 * largest + 1e-6);
     }
   }
 });
