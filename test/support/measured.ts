@@ -15,6 +15,12 @@ export function measuredChi(name: string): { k: Float64Array; chi: Float64Array 
   return { k: Float64Array.from(rows, ([k]) => k!), chi: Float64Array.from(rows, ([, chi]) => chi!) };
 }
 
+/** A file of the folder as it is, or undefined where the folder is absent. */
+export function measuredFile(name: string): string | undefined {
+  const path = `${FOLDER}/${name}`;
+  return existsSync(path) ? readFileSync(path, 'utf8') : undefined;
+}
+
 /** A substance whose crystal structure is known beyond doubt, and the ranges it is compared in. */
 export interface Standard {
   readonly file: string;

@@ -13,7 +13,7 @@ import { logEvidence } from './posterior.js';
 import { type Posterior, posteriorOf } from './posterior-shape.js';
 import { powerAgainst } from './power.js';
 import { rivalsOf } from './rivals.js';
-import { prepareTrial, type SpectrumRequest, type Trial } from './trial.js';
+import { prepareTrial, type SpectrumRequest, type Trial, type TrialSpectrum } from './trial.js';
 import { carriedOver, type TrialModel, trialModel } from './trial-model.js';
 import type { CandidateJudgement, Comparison, FittedParameter, JudgeOptions, RivalResult } from './types.js';
 import { valencesOf } from './valence.js';
@@ -31,33 +31,47 @@ const PROBE = 0.1;
 const ORIGIN_STARTS = [0, -1.5, 1.5];
 const ROUGH = 6;
 
+export type JudgingClock = StageClock & { prediction: number; rivals: number };
+
 /** @throws {InputError} the candidate lacks the absorber, or its atoms coincide */
 export function judgeCandidate(
   file: string,
   structure: Structure,
   requests: readonly SpectrumRequest[],
-  { options, spread, modelError }: Settings,
-  clock: StageClock & { prediction: number; rivals: number },
+  settings: Settings,
+  clock: JudgingClock,
   running?: Running,
 ): CandidateJudgement {
   const begun = clock.now();
   running?.onProgress?.(`predicting ${file}`, 0);
-  const trial = prepareTrial(structure, requests, options, clock, running);
+  const trial = prepareTrial(structure, requests, settings.options, clock, running);
   clock.prediction += clock.now() - begun;
-  const model = trialModel(trial.spectra, spread);
+  return judgeTrial(file, trial, settings, clock, running);
+}
+
+/** Judges a candidate whose prediction stands. */
+export function judgeTrial(
+  file: string,
+  trial: Trial,
+  { options, spread, modelError }: Settings,
+  clock: JudgingClock,
+  running?: Running,
+): CandidateJudgement {
+  const { spectra, structure } = trial;
+  const model = trialModel(spectra, spread);
   const modes = bestPoints(model, running);
   const best = modes[0]!;
-  const degrees = requests.reduce((sum, { vector }) => sum + vector.independentPoints, 0);
+  const degrees = spectra.reduce((sum, { vector }) => sum + vector.independentPoints, 0);
   const posterior = posteriorOf(model, modes, options.sampling ?? 'auto', trial, running);
   const parameters = describeParameters(model, best, posterior);
-  const comparisons = requests.map(({ vector, file: data }, s) => comparisonOf(vector, model, s, best.z, data));
+  const comparisons = spectra.map(({ vector, file: data }, s) => comparisonOf(vector, model, s, best.z, data));
   const stretched = overlength(trial, model, best, spread);
   const numbers = {
     x: best.x,
     independentPoints: degrees,
     p: chiSquaredAbove(best.x, degrees),
     pDistances: distancesProbability(stretched),
-    rFactor: jointRFactor(comparisons, requests),
+    rFactor: jointRFactor(comparisons, spectra),
     power: powerAgainst(trial, model, spread, degrees, PROBE),
   };
   const strained = strainedOf(parameters);
@@ -66,15 +80,15 @@ export function judgeCandidate(
   const beforeRivals = clock.now();
   const rivals = options.rivals ? judgeRivals(trial, model, best, spread, degrees, evidence, clock, running) : [];
   clock.rivals += clock.now() - beforeRivals;
-  const kMax = Math.max(...requests.map(({ vector }) => vector.window.kRange[1]));
+  const kMax = Math.max(...spectra.map(({ vector }) => vector.window.kRange[1]));
   const elements = [
     ...new Set(
-      trial.spectra.flatMap(({ sites }) =>
+      spectra.flatMap(({ sites }) =>
         sites.flatMap(({ signal }) => signal.paths.map(({ vertices }) => signal.site.atoms[vertices[1]!]!.element)),
       ),
     ),
   ];
-  const resolution = Math.min(...requests.map(({ vector }) => informationContent(vector.window.kRange, vector.window.rRange).resolution));
+  const resolution = Math.min(...spectra.map(({ vector }) => informationContent(vector.window.kRange, vector.window.rRange).resolution));
   return {
     file,
     title: structure.title,
@@ -103,7 +117,7 @@ export function judgeCandidate(
     comparisons:
       options.bands === false
         ? comparisons
-        : comparisons.map((comparison, s) => withBands(comparison, requests[s]!, model, s, posterior.draw)),
+        : comparisons.map((comparison, s) => withBands(comparison, spectra[s]!, model, s, posterior.draw)),
     assumptions: assumptionsOf(trial, options, spread, modelError),
     wouldChange: wouldChange(finding, numbers, stretched, kMax),
     cannotTell: cannotTell(elements, degrees, model.parameters, resolution),
@@ -164,12 +178,12 @@ function judgeRivals(
   return results.sort((a, b) => b.logEvidence - a.logEvidence);
 }
 
-function jointRFactor(comparisons: readonly Comparison[], requests: readonly SpectrumRequest[]): number {
-  const parts = comparisons.map((comparison, s) => rFactorOf(comparison, requests[s]!.vector.window.rRange));
+function jointRFactor(comparisons: readonly Comparison[], spectra: readonly TrialSpectrum[]): number {
+  const parts = comparisons.map((comparison, s) => rFactorOf(comparison, spectra[s]!.vector.window.rRange));
   return parts.reduce((sum, { misfit }) => sum + misfit, 0) / parts.reduce((sum, { power }) => sum + power, 0);
 }
 
-function withBands(comparison: Comparison, { vector }: SpectrumRequest, model: TrialModel, s: number, draw: Draw): Comparison {
+function withBands(comparison: Comparison, { vector }: TrialSpectrum, model: TrialModel, s: number, draw: Draw): Comparison {
   const prior = bandsOf(vector, model, s, priorDraw(model));
   const posterior = bandsOf(vector, model, s, draw);
   return { ...comparison, bands: { priorK: prior.k, posteriorK: posterior.k, priorR: prior.R, posteriorR: posterior.R } };

@@ -18,12 +18,13 @@ export const CAUTION =
  * it sees a common error of the distances late. That one error is what the tool is for, so it is asked for directly as well: does
  * setting the distances free bring more than chance (one degree for a common stretch, one a shell class)? Of the two directed
  * questions the smaller probability counts twice (Bonferroni) and must fall below 1 %, so that together they add at most 1 % of
- * false alarms to the 5 % of the overall test.
+ * false alarms to the 5 % of the overall test. What was not rejected is undecided where the data had little power to reject anything:
+ * poor data never make a structure look good, but a rejection stands whatever the power was.
  */
 export function findingWord(p: number, pDistances: number, power: number, strained: readonly string[]): FindingWord {
-  if (power < LEAST_POWER) return 'undecided';
   if (Math.min(p, pDistances) < INCONSISTENT) return 'inconsistent';
   if (p < CONSISTENT || pDistances < DISTANCES_OFF) return 'in-tension';
+  if (power < LEAST_POWER) return 'undecided';
   return strained.length > 0 ? 'consistent-under-strain' : 'consistent';
 }
 

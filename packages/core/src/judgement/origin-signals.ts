@@ -17,14 +17,15 @@ interface Node {
   readonly im: Float64Array;
   readonly dRe: Float64Array;
   readonly dIm: Float64Array;
+  /** 1/λ and its slope by k (nk). */
+  readonly inverseLambda: Float64Array;
+  readonly inverseLambdaSlope: Float64Array;
 }
 
 export class OriginSignals {
   readonly signal: SiteSignal;
   private readonly k: Float64Array;
   private readonly nodes = new Map<number, Node>();
-  private readonly pRe: Float64Array;
-  private readonly pSlope: Float64Array;
   private e0 = Number.NaN;
   /** At the present origin, row-major (paths, nk): A, and dA/dE0. */
   readonly re: Float64Array;
@@ -46,8 +47,6 @@ export class OriginSignals {
     this.im = new Float64Array(size);
     this.dRe = new Float64Array(size);
     this.dIm = new Float64Array(size);
-    this.pRe = new Float64Array(k.length);
-    this.pSlope = new Float64Array(k.length);
     this.kTheory = new Float64Array(k.length);
     this.kPerEv = new Float64Array(k.length);
     this.inverseLambda = new Float64Array(k.length);
@@ -58,15 +57,19 @@ export class OriginSignals {
   moveTo(e0: number): void {
     if (e0 === this.e0) return;
     this.e0 = e0;
-    const { kTheory, kPerEv, inverseLambda, inverseLambdaSlope, signal } = this;
-    theoryGrid(this.k, e0, signal.table.k[0]!, kTheory, kPerEv);
-    signal.wave.evaluate(signal.wave.stencil(kTheory), this.pRe, this.pSlope, inverseLambda, inverseLambdaSlope);
+    const { inverseLambda, inverseLambdaSlope } = this;
+    theoryGrid(this.k, e0, this.signal.table.k[0]!, this.kTheory, this.kPerEv);
     const below = Math.floor(e0 / STEP);
     const t = e0 / STEP - below;
     const a = this.node(below);
     const b = this.node(below + 1);
     hermite(t, a.re, b.re, a.dRe, b.dRe, this.re, this.dRe);
     hermite(t, a.im, b.im, a.dIm, b.dIm, this.im, this.dIm);
+    // 1/λ changes by 1e-4 of itself over half an eV: a straight line does
+    for (let i = 0; i < inverseLambda.length; i++) {
+      inverseLambda[i] = (1 - t) * a.inverseLambda[i]! + t * b.inverseLambda[i]!;
+      inverseLambdaSlope[i] = (1 - t) * a.inverseLambdaSlope[i]! + t * b.inverseLambdaSlope[i]!;
+    }
   }
 
   private node(index: number): Node {
@@ -80,13 +83,16 @@ export class OriginSignals {
       im: new Float64Array(size),
       dRe: new Float64Array(size),
       dIm: new Float64Array(size),
+      inverseLambda: new Float64Array(nk),
+      inverseLambdaSlope: new Float64Array(nk),
     };
     const kTheory = new Float64Array(nk);
     const kPerEv = new Float64Array(nk);
     theoryGrid(k, index * STEP, signal.table.k[0]!, kTheory, kPerEv);
     const stencil = signal.wave.stencil(kTheory);
-    const { pRe, pSlope } = this;
-    signal.wave.evaluate(stencil, pRe, pSlope, new Float64Array(nk), new Float64Array(nk));
+    const pRe = new Float64Array(nk);
+    const pSlope = new Float64Array(nk);
+    signal.wave.evaluate(stencil, pRe, pSlope, node.inverseLambda, node.inverseLambdaSlope);
     signal.signals.forEach((path, j) => {
       const part = (all: Float64Array) => all.subarray(j * nk, (j + 1) * nk);
       path.evaluateWithSlope(stencil, pRe, pSlope, part(node.re), part(node.im), part(node.dRe), part(node.dIm));

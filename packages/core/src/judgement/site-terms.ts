@@ -12,14 +12,20 @@ import type { SiteSignal } from '../predict/site-signal.js';
 import type { OriginSignals } from './origin-signals.js';
 import { SparseNodes } from './sparse-nodes.js';
 
-/** How the parameters act on the paths of one site; indices into the parameter vector. */
+/**
+ * How the parameters act on one site; indices into the parameter vector. A term is a path, or that part of a group of alike paths whose
+ * atoms have coordinate errors of their own.
+ */
 export interface SiteUnknowns {
   readonly energyOrigin: number;
   readonly amplitude: number;
-  /** Per path (np). */
+  /** Path of each term, and the routes it stands for (nt). */
+  readonly path: Int32Array;
+  readonly degeneracy: Float64Array;
+  /** Per term (nt). */
   readonly thermalScale: Int32Array;
   readonly extraStatic: Int32Array;
-  /** Shift of path j: Σ coefficient · z over entries shiftStart[j] … shiftStart[j + 1] (Å per z). */
+  /** Shift of term j: Σ coefficient · z over entries shiftStart[j] … shiftStart[j + 1] (Å per z). */
   readonly shiftStart: Int32Array;
   readonly shiftParameter: Int32Array;
   readonly shiftCoefficient: Float64Array;
@@ -42,8 +48,8 @@ export class SiteTerms {
   private readonly nodes: SparseNodes;
   private readonly factorRe: Float64Array;
   private readonly factorIm: Float64Array;
-  /** Of the path at work: Å², Å³, Å, Å⁻¹. */
-  private readonly path = { sigma2: 0, c3: 0, shift: 0, inverseR: 0 };
+  /** Of the term at work: Å², Å³, Å, Å⁻¹. */
+  private readonly term = { sigma2: 0, c3: 0, shift: 0, inverseR: 0 };
 
   /**
    * @param atOrigin  amplitudes on the grid of the data; models of one site may share it
@@ -64,30 +70,31 @@ export class SiteTerms {
 
   /** Adds the site's part to chi (nk) and, if given, to the derivatives by z, row-major (parameters, nk). */
   addTo(chi: Float64Array, values: ParameterValues, jacobian?: Float64Array): void {
-    const { unknowns, atOrigin, signal } = this;
+    const { unknowns, atOrigin } = this;
     atOrigin.moveTo(values.value[unknowns.energyOrigin]!);
-    for (let j = 0; j < signal.signals.length; j++) {
+    for (let j = 0; j < unknowns.path.length; j++) {
       this.prepareFactor(j, values);
       if (jacobian) this.addWithSlopes(j, chi, values, jacobian);
       else this.add(j, chi);
     }
   }
 
-  /** Size, σ², C₃ and shift of path j, and the disorder factor at the nodes. */
+  /** Size, σ², C₃ and shift of term j, and the disorder factor at the nodes. */
   private prepareFactor(j: number, { z, value }: ParameterValues): void {
     const { unknowns, atOrigin, signal, nodes, factorRe, factorIm } = this;
     const { shiftStart, shiftParameter, shiftCoefficient } = unknowns;
-    const { degeneracy, halfLength } = signal.signals[j]!.path;
+    const path = unknowns.path[j]!;
+    const { halfLength } = signal.signals[path]!.path;
     const t = value[unknowns.thermalScale[j]!]!;
-    const sigma2 = this.sigma2[j]! * t + value[unknowns.extraStatic[j]!]!;
-    const c3 = this.c3[j]! * t * t;
+    const sigma2 = this.sigma2[path]! * t + value[unknowns.extraStatic[j]!]!;
+    const c3 = this.c3[path]! * t * t;
     let shift = 0;
     for (let s = shiftStart[j]!; s < shiftStart[j + 1]!; s++) shift += shiftCoefficient[s]! * z[shiftParameter[s]!]!;
-    const size = signal.site.weight * value[unknowns.amplitude]! * degeneracy;
-    this.path.sigma2 = sigma2;
-    this.path.c3 = c3;
-    this.path.shift = shift;
-    this.path.inverseR = 1 / halfLength;
+    const size = signal.site.weight * value[unknowns.amplitude]! * unknowns.degeneracy[j]!;
+    this.term.sigma2 = sigma2;
+    this.term.c3 = c3;
+    this.term.shift = shift;
+    this.term.inverseR = 1 / halfLength;
     const { kTheory, inverseLambda } = atOrigin;
     for (let m = 0; m < nodes.at.length; m++) {
       const i = nodes.at[m]!;
@@ -104,7 +111,7 @@ export class SiteTerms {
     const { nodes, factorRe, factorIm } = this;
     const { first, weights } = nodes;
     const { re, im } = this.atOrigin;
-    const base = j * chi.length;
+    const base = this.unknowns.path[j]! * chi.length;
     for (let i = 0; i < chi.length; i++) {
       const m = first[i]!;
       const w = 4 * i;
@@ -120,7 +127,7 @@ export class SiteTerms {
 
   private addWithSlopes(j: number, chi: Float64Array, { value, slope }: ParameterValues, jacobian: Float64Array): void {
     const { unknowns, atOrigin, nodes, factorRe, factorIm, work } = this;
-    const { sigma2, c3, shift, inverseR } = this.path;
+    const { sigma2, c3, shift, inverseR } = this.term;
     const { first, weights } = nodes;
     const { kTheory, inverseLambda, inverseLambdaSlope, kPerEv, re, im, dRe, dIm } = atOrigin;
     const nk = kTheory.length;
@@ -131,7 +138,8 @@ export class SiteTerms {
     const amplitudeRow = unknowns.amplitude * nk;
     const perEv = slope[unknowns.energyOrigin]!;
     const perAmplitude = slope[unknowns.amplitude]! / value[unknowns.amplitude]!;
-    const base = j * nk;
+    const path = unknowns.path[j]!;
+    const base = path * nk;
     for (let i = 0; i < nk; i++) {
       const m = first[i]!;
       const w = 4 * i;
@@ -160,8 +168,8 @@ export class SiteTerms {
       jacobian[amplitudeRow + i]! += perAmplitude * uIm;
     }
     const thermal = unknowns.thermalScale[j]!;
-    const bySigma = this.sigma2[j]! * slope[thermal]!;
-    const byCubic = 2 * this.c3[j]! * value[thermal]! * slope[thermal]!;
+    const bySigma = this.sigma2[path]! * slope[thermal]!;
+    const byCubic = 2 * this.c3[path]! * value[thermal]! * slope[thermal]!;
     addScaled(jacobian, thermal * nk, dSigma, bySigma, nk);
     if (byCubic !== 0) addScaled(jacobian, thermal * nk, dCubic, byCubic, nk);
     addScaled(jacobian, unknowns.extraStatic[j]! * nk, dSigma, slope[unknowns.extraStatic[j]!]!, nk);

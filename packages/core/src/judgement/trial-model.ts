@@ -108,15 +108,16 @@ function unknownsOf(
   const { atoms, label } = signal.site;
   const origin = parameters.add(energyOrigin(element, edge, expected));
   const size = parameters.add(amplitude(s, `spectrum ${s + 1}`));
-  const thermal = new Int32Array(paths.length);
-  const extra = new Int32Array(paths.length);
-  const start = new Int32Array(paths.length + 1);
+  const terms = termsOf(site);
+  const thermal = new Int32Array(terms.length);
+  const extra = new Int32Array(terms.length);
+  const start = new Int32Array(terms.length + 1);
   const shifts: { parameter: number; coefficient: number }[] = [];
 
-  // alike scatterers move as one; each has the parameter of its distance, whichever of the two atoms absorbs
+  // each scatterer has the parameter of its distance, whichever of the two atoms absorbs
   const scatterers = new Map<number, number>();
-  for (const { legs, members } of paths) {
-    if (legs !== 2) continue;
+  for (const { path, members } of terms) {
+    if (paths[path]!.legs !== 2) continue;
     const first = members[0]![1]!;
     const sd = site.distanceSd(first);
     if (!(sd > 0)) continue;
@@ -128,30 +129,68 @@ function unknownsOf(
   }
   const stretch = freedom === 'stretch' ? parameters.add(freeStretch()) : -1;
 
-  paths.forEach(({ vertices, halfLength }, j) => {
+  terms.forEach(({ path, members }, j) => {
+    const { vertices, halfLength } = paths[path]!;
     const elements = vertices.slice(1).map((vertex) => atoms[vertex]!.element);
     const kind = pathClass(vertices, classes);
     thermal[j] = parameters.add(thermalScale(element, kind));
     extra[j] = parameters.add(extraStatic(element, kind, spread));
     shifts.push({ parameter: parameters.add(classShift(element, kind)), coefficient: lengthSd(halfLength, elements) });
     if (stretch >= 0) shifts.push({ parameter: stretch, coefficient: halfLength * parameters.list[stretch]!.sd });
-    for (const { atom, pull } of radialPulls(signal.site, vertices)) {
-      if (pull === 0) continue;
-      const own = scatterers.get(atom);
-      if (own !== undefined) shifts.push({ parameter: own, coefficient: pull * parameters.list[own]!.sd });
-      if (freedom !== 'classes') continue;
-      const free = parameters.add(freeShift(element, classes[atom]!));
-      shifts.push({ parameter: free, coefficient: pull * parameters.list[free]!.sd });
+    // a group of alike routes moves as their mean does
+    const own = new Map<number, number>();
+    const move = (parameter: number, by: number): void => {
+      own.set(parameter, (own.get(parameter) ?? 0) + (by * parameters.list[parameter]!.sd) / members.length);
+    };
+    for (const route of members) {
+      for (const { atom, pull } of radialPulls(signal.site, route)) {
+        if (pull === 0) continue;
+        const scatterer = scatterers.get(atom);
+        if (scatterer !== undefined) move(scatterer, pull);
+        if (freedom === 'classes') move(parameters.add(freeShift(element, classes[atom]!)), pull);
+      }
     }
+    for (const [parameter, coefficient] of own) shifts.push({ parameter, coefficient });
     start[j + 1] = shifts.length;
   });
   return {
     energyOrigin: origin,
     amplitude: size,
+    path: Int32Array.from(terms, ({ path }) => path),
+    degeneracy: Float64Array.from(terms, ({ degeneracy }) => degeneracy),
     thermalScale: thermal,
     extraStatic: extra,
     shiftStart: start,
     shiftParameter: Int32Array.from(shifts, ({ parameter }) => parameter),
     shiftCoefficient: Float64Array.from(shifts, ({ coefficient }) => coefficient),
   };
+}
+
+interface Term {
+  readonly path: number;
+  readonly degeneracy: number;
+  /** Routes of the path that the term stands for. */
+  readonly members: readonly (readonly number[])[];
+}
+
+/**
+ * Paths as they move. Single scatterers that are alike by symmetry of the crystal (one atom of the file) move together; those alike by
+ * chance, or because a model was built so, are different atoms with errors of their own, and become a term each.
+ */
+function termsOf({ signal }: TrialSite): Term[] {
+  const { atoms } = signal.site;
+  return signal.paths.flatMap(({ legs, members, degeneracy }, path): Term[] => {
+    if (legs !== 2) return [{ path, degeneracy, members }];
+    const bySource = new Map<number, number[][]>();
+    for (const route of members) {
+      const { source } = atoms[route[1]!]!;
+      const list = bySource.get(source);
+      if (list) list.push([...route]);
+      else bySource.set(source, [[...route]]);
+    }
+    const weightOf = (routes: readonly (readonly number[])[]): number =>
+      routes.reduce((sum, route) => sum + atoms[route[1]!]!.occupancy, 0);
+    const whole = weightOf(members);
+    return [...bySource.values()].map((own) => ({ path, degeneracy: (degeneracy * weightOf(own)) / whole, members: own }));
+  });
 }

@@ -41,6 +41,8 @@ export interface TrialSite {
 
 /** One data set of a trial. */
 export interface TrialSpectrum {
+  /** Name of the data, for the result. */
+  readonly file: string;
   readonly vector: DataVector;
   readonly element: string;
   readonly edge: Edge;
@@ -86,7 +88,7 @@ export function prepareTrial(
   const signals = new Map<string, SiteSignal[]>();
   let thermal = options.thermal;
   let thermalReason = 'as asked for';
-  const spectra = requests.map(({ vector, absorber, edge, temperature, energyOrigin }): TrialSpectrum => {
+  const spectra = requests.map(({ file, vector, absorber, edge, temperature, energyOrigin }): TrialSpectrum => {
     const wanted: PredictOptions = {
       ...DEFAULTS,
       ...definedOnly(options),
@@ -125,7 +127,7 @@ export function prepareTrial(
         distanceSd: (atom) => options.coordinateSd ?? distanceSd(precision, centre!, signal.site.atoms[atom]!),
       });
     });
-    return { vector, element: own[0]!.site.element, edge, temperature, sites, options: settled, energyOrigin };
+    return { file, vector, element: own[0]!.site.element, edge, temperature, sites, options: settled, energyOrigin };
   });
   return { structure, precision, spectra, thermal: thermal!, thermalReason, warnings: unique(warnings) };
 }

@@ -29,8 +29,15 @@ export class SplineStencil {
       const b = (t[j]! - x[low]!) / h;
       const a = 1 - b;
       this.interval[j] = low;
-      this.value.set([a, b, ((a * a * a - a) * h * h) / 6, ((b * b * b - b) * h * h) / 6], 4 * j);
-      this.slope.set([-1 / h, 1 / h, ((1 - 3 * a * a) * h) / 6, ((3 * b * b - 1) * h) / 6], 4 * j);
+      const { value, slope } = this;
+      value[4 * j] = a;
+      value[4 * j + 1] = b;
+      value[4 * j + 2] = ((a * a * a - a) * h * h) / 6;
+      value[4 * j + 3] = ((b * b * b - b) * h * h) / 6;
+      slope[4 * j] = -1 / h;
+      slope[4 * j + 1] = 1 / h;
+      slope[4 * j + 2] = ((1 - 3 * a * a) * h) / 6;
+      slope[4 * j + 3] = ((3 * b * b - 1) * h) / 6;
     }
   }
 
