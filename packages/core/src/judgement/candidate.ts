@@ -4,6 +4,7 @@ import { chiSquaredAbove } from '../numerics/chi-squared.js';
 import type { StageClock } from '../predict/site-signal.js';
 import { informationContent } from '../spectrum/index.js';
 import type { Structure } from '../structure/types.js';
+import { bestPoints } from './best-points.js';
 import { bandsOf, comparisonOf, type Draw, priorDraw, rFactorOf } from './comparison.js';
 import { assumptionsOf, disorderRows, distinctAbsorbers } from './describe.js';
 import { CAUTION, CONSISTENT, cannotTell, distancesProbability, findingSentence, findingWord, strainedOf, wouldChange } from './finding.js';
@@ -27,9 +28,6 @@ export interface Settings {
 
 /** Å: the error of the first shell whose discovery is asked for. */
 const PROBE = 0.1;
-/** Starts of the energy origin, in standard deviations of its prior: k shifts enough between them to fall into another minimum. */
-const ORIGIN_STARTS = [0, -1.5, 1.5];
-const ROUGH = 6;
 
 export type JudgingClock = StageClock & { prediction: number; rivals: number };
 
@@ -124,24 +122,6 @@ export function judgeTrial(
     caution: CAUTION,
     warnings: trial.warnings,
   };
-}
-
-/** Local minima from several energy origins, the best first, alike ones once. */
-function bestPoints(model: TrialModel, running?: Running): Minimum[] {
-  const origins = model.list.flatMap(({ name }, p) => (name === 'energy-origin' ? [p] : []));
-  const found: Minimum[] = [];
-  for (const start of ORIGIN_STARTS) {
-    const z = new Float64Array(model.parameters);
-    for (const p of origins) z[p] = start;
-    if (start === 0) found.push(minimise(model, z, undefined, running));
-    else {
-      const rough = minimise(model, z, ROUGH, running);
-      const isNew = found.every((known) => origins.some((p) => Math.abs(known.z[p]! - rough.z[p]!) > 0.3));
-      if (isNew && rough.x < found[0]!.x + 30) found.push(minimise(model, rough.z, undefined, running));
-    }
-  }
-  found.sort((a, b) => a.x - b.x);
-  return found.filter((one, i) => found.slice(0, i).every((other) => origins.some((p) => Math.abs(other.z[p]! - one.z[p]!) > 0.1)));
 }
 
 function describeParameters({ list }: TrialModel, { z }: Minimum, { sd }: Posterior): FittedParameter[] {
