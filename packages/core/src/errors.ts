@@ -10,13 +10,17 @@ export interface TextPlace {
   readonly text?: string;
 }
 
+/** A message is one a person reads: what a file put into it may be a megabyte long. */
+const LONGEST_MESSAGE = 600;
+const cut = (message: string): string => (message.length > LONGEST_MESSAGE ? `${message.slice(0, LONGEST_MESSAGE - 1)}…` : message);
+
 /** A file's content is unusable. The message already names the place; the caller adds the file name. */
 export class ReadError extends Error {
   override readonly name = 'ReadError';
   readonly place: TextPlace;
 
   constructor(message: string, place: TextPlace = {}) {
-    super(message);
+    super(cut(message));
     this.place = place;
   }
 }
@@ -24,6 +28,10 @@ export class ReadError extends Error {
 /** What was asked cannot be done with this input (element absent, edge unknown, atoms coincide). */
 export class InputError extends Error {
   override readonly name = 'InputError';
+
+  constructor(message: string) {
+    super(cut(message));
+  }
 }
 
 /** An iteration did not reach its tolerance. */

@@ -16,7 +16,9 @@ export interface ColumnText {
 }
 
 const COMMENT = /^\s*[#%;!]+/;
-const SPLIT = { blank: /\s+/, tab: /\t/, comma: /\s*,\s*/, semicolon: /\s*;\s*/ } as const;
+const SPLIT = { blank: /\s+/, tab: '\t', comma: ',', semicolon: ';' } as const; // cells are trimmed after, each blank met once
+/** A table wider than this is none of a scan: some tens of detector elements are common. */
+const MOST_COLUMNS = 1000;
 const NO_NUMBER = /^(nan|[+-]?inf(inity)?|-+|\*+|null|none|n\/?a|overflow|)$/i;
 
 function split(line: string, delimiter: ColumnText['delimiter']): string[] {
@@ -60,6 +62,10 @@ export function readColumns(text: string): ColumnText {
   }
   const delimiter = delimiterOf(lines[start]!)!;
   const count = split(lines[start]!, delimiter).length;
+  if (count > MOST_COLUMNS)
+    throw new ReadError(`readColumns: line ${start + 1}: ${count} columns are more than the ${MOST_COLUMNS} that are read`, {
+      line: start + 1,
+    });
   const header = lines.slice(0, start).map((line) => line.replace(COMMENT, '').trim());
   const diagnostics: Diagnostic[] = [];
   const rows: number[][] = [];
@@ -99,7 +105,7 @@ export function readColumns(text: string): ColumnText {
 /** Names from the last header line with one word a column; a unit may follow in brackets or after an underscore. */
 function namesFrom(header: readonly string[], count: number, delimiter: ColumnText['delimiter']): { names: string[]; units: string[] } {
   for (const line of [...header].reverse()) {
-    const joined = line.replace(/\s*[([]\s*([A-Za-zÅ^⁻¹\-1/]+)\s*[)\]]/g, '_$1');
+    const joined = line.replace(/\s{0,9}[([]\s{0,9}([A-Za-zÅ^⁻¹\-1/]{1,20})\s{0,9}[)\]]/g, '_$1');
     for (const words of [split(joined, delimiter), joined.trim().split(/[\s,;]+/)]) {
       if (words.length !== count || words.some((word) => word === '' || isNumber(word))) continue;
       const units = words.map((word) => /[_\s](eV|keV|deg(?:rees)?|rad(?:ians)?)$/i.exec(word)?.[1] ?? '');

@@ -1,4 +1,5 @@
 import { CholeskyDecomposition, Matrix } from 'ml-matrix';
+import { InputError } from '../errors.js';
 
 export interface LinearFit {
   /** (p) */
@@ -15,7 +16,7 @@ export interface LinearFit {
  * @param columns  basis, each (n)
  * @param y        (n)
  * @param weight   ≥ 0 (n)
- * @throws {RangeError} columns dependent, or fewer points of positive weight than columns
+ * @throws {InputError} columns dependent, or fewer points of positive weight than columns
  */
 export function leastSquares(columns: readonly Float64Array[], y: Float64Array, weight: Float64Array): LinearFit {
   const p = columns.length;
@@ -35,8 +36,10 @@ export function leastSquares(columns: readonly Float64Array[], y: Float64Array, 
     for (let i = 0; i < y.length; i++) sum += weight[i]! * A[i]! * y[i]!;
     right.set(a, 0, sum / scale[a]!);
   }
+  // A column without weight, or numbers beyond the range of arithmetic, leave no matrix to solve.
+  if (!normal.to1DArray().every(Number.isFinite)) throw new InputError('least squares: the points do not determine the curve');
   const cholesky = new CholeskyDecomposition(normal);
-  if (!cholesky.isPositiveDefinite()) throw new RangeError('leastSquares: the columns are not independent on these points');
+  if (!cholesky.isPositiveDefinite()) throw new InputError('least squares: the points do not determine the curve');
   const solved = cholesky.solve(right);
   const unscaled = cholesky.solve(Matrix.eye(p));
   const coefficients = Float64Array.from(scale, (s, a) => solved.get(a, 0) / s);

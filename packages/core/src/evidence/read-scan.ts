@@ -8,6 +8,7 @@ import { HC_EV_ANGSTROM } from '../constants.js';
 import { elementSymbol } from '../elements/index.js';
 import { type Diagnostic, ReadError } from '../errors.js';
 import { readColumns } from './columns.js';
+import { MOST_POINTS } from './limits.js';
 import { checkRoles, guessRoles, rolesInWords, unitByMagnitude } from './roles.js';
 import type { ColumnRoles, DataTable, EnergyUnit, MeasuredScan, ReadOptions } from './types.js';
 import { looksLikeXdi, readXdi, xdiField } from './xdi.js';
@@ -60,6 +61,12 @@ const isEdge = (text: string | undefined): text is Edge => text === 'K' || text 
 export function readScan(text: string, options: ReadOptions = {}): MeasuredScan {
   const source = sourceOf(text);
   const { table, diagnostics } = source;
+  if (table.lines.length > MOST_POINTS) {
+    throw new ReadError(
+      `readScan: line ${table.lines[MOST_POINTS]}: ${table.lines.length} points are more than the ${MOST_POINTS} of one scan; average neighbours first, or give one scan a file`,
+      { line: table.lines[MOST_POINTS]! },
+    );
+  }
   const roles = options.columns ?? guessRoles(table);
   checkRoles(roles, table.columns.length);
   let guess = options.columns ? '' : rolesInWords(roles, table.names);
@@ -126,15 +133,15 @@ function energyFrom(
   const at = (roles.energy ?? roles.angle)!;
   const x = table.columns[at - 1]!;
   const stated = table.units[at - 1]!.toLowerCase();
-  const words: Record<string, EnergyUnit> = {
-    ev: 'eV',
-    kev: 'keV',
-    degrees: 'degrees',
-    deg: 'degrees',
-    radians: 'radians',
-    rad: 'radians',
-  };
-  let unit = options.energyUnit ?? words[stated];
+  const words = new Map<string, EnergyUnit>([
+    ['ev', 'eV'],
+    ['kev', 'keV'],
+    ['degrees', 'degrees'],
+    ['deg', 'degrees'],
+    ['radians', 'radians'],
+    ['rad', 'radians'],
+  ]);
+  let unit = options.energyUnit ?? words.get(stated);
   let said = '';
   if (!unit) {
     unit = roles.angle ? 'degrees' : unitByMagnitude(x);

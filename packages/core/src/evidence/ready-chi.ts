@@ -2,6 +2,7 @@
 
 import { InputError } from '../errors.js';
 import { uniformKGrid } from '../spectrum/index.js';
+import { checkKRange } from './limits.js';
 import { AVERAGING, applyMap, localFit, type SparseMap } from './local-fit.js';
 import { noiseOf } from './noise.js';
 import { pointNoise } from './point-noise.js';
@@ -27,6 +28,7 @@ export function reduceChi(scans: readonly ChiScan[], options: ReduceOptions): Re
   const kMax = Math.min(options.kMax ?? Infinity, end);
   if (!(kMax - begin >= 4))
     throw new InputError(`chi(k) runs from ${begin.toFixed(2)} to ${kMax.toFixed(2)} Å⁻¹; a range of 4 Å⁻¹ is needed`);
+  checkKRange(kMax);
   const k = uniformKGrid(kMax).filter((q) => q >= begin - 1e-9);
   const onGrid = scans.map((scan) => {
     const map = samePoints(scan.k, k) ?? localFit(scan.k, k, AVERAGING, 0);

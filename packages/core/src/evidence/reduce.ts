@@ -12,6 +12,7 @@ import { fourierTransform, K_STEP, kFromEnergyEv, uniformKGrid } from '../spectr
 import { mergeScans } from './align.js';
 import { backgroundProjector } from './background.js';
 import { findEdge, rangesFor } from './edge.js';
+import { checkKRange } from './limits.js';
 import { AVERAGING, applyMap, indexBelow, localFit } from './local-fit.js';
 import { noiseOf } from './noise.js';
 import { atomicDecay, type Normalised, normalise } from './normalise.js';
@@ -195,6 +196,7 @@ function reducePoints(
   if (!(kMax >= 5)) {
     throw new InputError(`the scan reaches k = ${kMax.toFixed(1)} Å⁻¹ above the edge at ${e0.toFixed(1)} eV; 5 Å⁻¹ are needed`);
   }
+  checkKRange(kMax);
   const k = uniformKGrid(kMax);
   const last = k.at(-1)!;
   choices.push({

@@ -71,18 +71,18 @@ export function guessRoles({ names, columns }: DataTable): ColumnRoles {
   throw new ReadError(`the columns cannot be told apart: ${shown}; state them, like energy=1,i0=2,it=3`);
 }
 
-const OPTION_WORDS: Readonly<Record<string, Role>> = {
-  energy: 'energy',
-  e: 'energy',
-  angle: 'angle',
-  k: 'k',
-  mu: 'mu',
-  i0: 'i0',
-  it: 'transmitted',
-  if: 'fluorescence',
-  ir: 'reference',
-  chi: 'chi',
-};
+const OPTION_WORDS = new Map<string, Role>([
+  ['energy', 'energy'],
+  ['e', 'energy'],
+  ['angle', 'angle'],
+  ['k', 'k'],
+  ['mu', 'mu'],
+  ['i0', 'i0'],
+  ['it', 'transmitted'],
+  ['if', 'fluorescence'],
+  ['ir', 'reference'],
+  ['chi', 'chi'],
+]);
 
 /**
  * Columns as the command line states them: "energy=1,i0=2,if=3+4+5".
@@ -93,7 +93,7 @@ export function parseColumnRoles(text: string): ColumnRoles {
   const roles: Record<string, number | number[]> = {};
   for (const part of text.split(',')) {
     const [word = '', at = ''] = part.split('=').map((piece) => piece.trim());
-    const role = OPTION_WORDS[word.toLowerCase()];
+    const role = OPTION_WORDS.get(word.toLowerCase());
     const numbers = at.split('+').map(Number);
     if (!role || numbers.some((n) => !(Number.isInteger(n) && n > 0)) || (numbers.length > 1 && role !== 'fluorescence')) {
       throw new InputError(`columns: "${part}" should be like energy=1, mu=2, i0=2, it=3, if=4+5, ir=6, angle=1, k=1 or chi=2`);

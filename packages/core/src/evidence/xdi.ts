@@ -69,6 +69,7 @@ export function readXdi(text: string): XdiFile {
   if (version[0] !== 1) note('xdi-version', `XDI ${head[1]} is read by the rules of XDI 1`, 1);
 
   const fields: XdiField[] = [];
+  const known = new Set<string>();
   const comments: string[] = [];
   let part: 'fields' | 'comments' | 'done' = 'fields';
   let labels: { words: string[]; line: number } | undefined;
@@ -100,7 +101,8 @@ export function readXdi(text: string): XdiFile {
       note('xdi-field-ignored', `"${name.slice(0, 40)}" is no Family.tag with a colon; the field is ignored`, line);
       return;
     }
-    if (xdiField({ fields }, name)) note('xdi-field-repeated', `${name} stands here again; the last one counts`, line);
+    if (known.has(name.toLowerCase())) note('xdi-field-repeated', `${name} stands here again; the last one counts`, line);
+    known.add(name.toLowerCase());
     fields.push({ name, value: body.slice(colon + 1).trim(), line });
   }
   if (part !== 'done') note('xdi-no-header-end', 'the line "# ---" that ends the header is missing', at + 1);

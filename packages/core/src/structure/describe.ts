@@ -84,16 +84,17 @@ export function describeSites(structure: Structure, { file = '', absorber, radiu
   const described = [...bySource.values()].map((variants): DescribedSite => {
     const [first] = variants as [Site, ...Site[]];
     const weight = variants.reduce((sum, variant) => sum + variant.weight, 0);
-    const neighbours = neighboursOf(first);
+    const listed = variants.map(neighboursOf);
+    const neighbours = listed[0]!;
     const bonds = neighbours.filter(({ bonded }) => bonded);
     return {
       label: first.label,
       element: first.element,
       weight,
-      variants: variants.map((variant) => ({
+      variants: variants.map((variant, i) => ({
         name: variant.variant ?? '',
         weight: variant.weight / weight,
-        neighbours: neighboursOf(variant),
+        neighbours: listed[i]!,
       })),
       neighbours,
       coordination: bonds.reduce((sum, { occupancy }) => sum + occupancy, 0),

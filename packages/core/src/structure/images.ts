@@ -14,6 +14,12 @@ const SAME_PLACE = 0.05;
 /** Å: no two atoms are this close; a copy of a fully occupied atom within it is the atom itself, badly placed. */
 const SAME_ATOM = 0.5;
 
+/** Atoms per Å³ and room for a handful: no structure, with all its alternates, is nearly so dense. */
+const DENSEST = 10;
+const HANDFUL = 400;
+/** More images of atoms in the cell than this are refused: some 50 bytes each. */
+const MOST_IMAGES = 3e7;
+
 /** One image of one atom of the file. */
 export interface Image {
   readonly source: number;
@@ -53,6 +59,11 @@ export class Images {
     this.positionOf = new Float64Array(3 * atoms.length);
 
     const room = atoms.length * this.operators.length;
+    if (room > MOST_IMAGES) {
+      throw new InputError(
+        `${atoms.length} atoms under ${this.operators.length} symmetry operators are more than the ${MOST_IMAGES / 1e6} million that can be held; cut out the part around the absorber`,
+      );
+    }
     const fractional = new Float64Array(3 * room);
     this.sources = new Int32Array(room);
     this.operatorOf = new Uint16Array(room);
@@ -109,10 +120,20 @@ export class Images {
     return [this.positionOf[3 * source]!, this.positionOf[3 * source + 1]!, this.positionOf[3 * source + 2]!];
   }
 
-  /** All images within `radius` of a point, unsorted. */
+  /**
+   * All images within `radius` of a point, unsorted.
+   * @throws {InputError} more atoms than any structure has there: each would be met with every other
+   */
   around(centre: Vec3, radius: number): Image[] {
     const found: Image[] = [];
+    const most = HANDFUL + DENSEST * 4.19 * radius ** 3;
     this.grid.visit(centre, radius, (index, shift, x, y, z, d2) => {
+      if (found.length >= most) {
+        const place = centre.map((v) => v.toFixed(1)).join(' ');
+        throw new InputError(
+          `more than ${Math.floor(most)} atoms lie within ${radius} Å of ${place}; coordinates should be in Å, and each atom be there once`,
+        );
+      }
       found.push({ source: this.sources[index]!, symmetry: this.symmetryOf(index, shift), position: [x, y, z], distance: Math.sqrt(d2) });
     });
     return found;

@@ -2,6 +2,9 @@
 import { ReadError } from '../errors.js';
 import type { SymmetryOperator, Vec3 } from './types.js';
 
+/** No space group has more, in any usual setting; 192 in Fm-3m. */
+const MOST_OPERATORS = 1000;
+
 export const IDENTITY: SymmetryOperator = { rotation: [1, 0, 0, 0, 1, 0, 0, 0, 1], translation: [0, 0, 0], text: 'x,y,z' };
 
 const TERM = /([+-]?)(?:(\d+\/\d+|\d*\.\d+|\d+\.?)\*?)?([xyz])?/y;
@@ -68,6 +71,8 @@ export function tidyOperators(operators: readonly SymmetryOperator[]): readonly 
   for (const operator of operators) {
     const key = operatorKey(operator);
     if (!seen.has(key)) seen.set(key, operator);
+    if (seen.size > MOST_OPERATORS)
+      throw new ReadError(`the file lists more than ${MOST_OPERATORS} different symmetry operators; a space group has at most 192`);
   }
   return [...seen.values()];
 }

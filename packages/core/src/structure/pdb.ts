@@ -382,6 +382,7 @@ function checkDuplicates(atoms: readonly Atom[], diagnostics: Diagnostic[]): voi
         message: `line ${atom.line}: ${atom.name} occurs twice at the same place; one is used`,
         line: atom.line!,
       });
+      break;
     }
   }
 }

@@ -22,6 +22,12 @@ export interface SiteOptions {
 
 /** Half a gigabyte of neighbours. */
 const MOST_CLUSTER_ATOMS = 3e6;
+/** More different sites than this are no question EXAFS answers, and a minute of work for the list alone. */
+const MOST_SITES = 5000;
+/** Diagnostics of the whole structure repeated with every site. */
+const MOST_SHARED = 40;
+/** So many may be listed before one more is judged hopeless. */
+const SOME_CLUSTER_ATOMS = 3e4;
 
 /** Å: two atoms this close cannot both be there. */
 const TOO_CLOSE = 0.5;
@@ -38,9 +44,10 @@ export function findSites(structure: Structure, options: SiteOptions): readonly 
   if (!(radius > 0 && radius < Infinity)) throw new InputError(`the cluster radius is ${radius} Å; it must be above 0`);
   const images = new Images(structure);
   const disorder = findDisorder(structure, images);
-  const shared = [...images.diagnostics, ...checkStructure(structure)];
+  const shared = fewOf([...images.diagnostics, ...checkStructure(structure)]);
   const sites: Site[] = [];
   for (const sources of chooseAbsorbers(structure, options.absorber)) {
+    if (!images.isCrystal) checkCount(sources.length, structure.atoms[sources[0]!]!);
     const found: Site[] = [];
     let atoms = 0;
     for (const [done, source] of sources.entries()) {
@@ -49,16 +56,32 @@ export function findSites(structure: Structure, options: SiteOptions): readonly 
         atoms += site.atoms.length;
       }
       // Judged from the first few, so that a hopeless wish is refused at once and not when the memory is full.
-      if (done >= 20 && (atoms / (done + 1)) * sources.length > MOST_CLUSTER_ATOMS) {
+      if ((done >= 20 || atoms > SOME_CLUSTER_ATOMS) && (atoms / (done + 1)) * sources.length > MOST_CLUSTER_ATOMS) {
         throw new InputError(
           `${sources.length} absorbing ${structure.atoms[source]!.element} atoms with their surroundings to ${radius} Å are more than can be held; ` +
             `choose one by its label, like "${atomLabel(structure.atoms[source]!)}", or a smaller radius`,
         );
       }
     }
-    sites.push(...normalised(images.isCrystal ? mergeEquivalent(found) : found));
+    const merged = images.isCrystal ? mergeEquivalent(found) : found;
+    if (images.isCrystal) checkCount(new Set(merged.map(({ atoms: [own] }) => own!.source)).size, structure.atoms[sources[0]!]!);
+    for (const site of normalised(merged)) sites.push(site);
   }
   return sites;
+}
+
+function checkCount(count: number, first: Atom): void {
+  if (count <= MOST_SITES) return;
+  throw new InputError(
+    `${count} absorbing ${first.element} atoms in different surroundings are more than the ${MOST_SITES} that are listed; choose one by its label, like "${atomLabel(first)}"`,
+  );
+}
+
+/** Nothing is lost in silence: what is left out is counted. */
+function fewOf(diagnostics: readonly Diagnostic[]): Diagnostic[] {
+  if (diagnostics.length <= MOST_SHARED) return [...diagnostics];
+  const left = diagnostics.length - MOST_SHARED;
+  return [...diagnostics.slice(0, MOST_SHARED), { code: 'more-diagnostics', message: `${left} more remarks like these on the structure` }];
 }
 
 /** A structure whose present atoms are those of a later frame (xyz) or model (pdb, mmcif); 0 is the first. */
@@ -224,7 +247,7 @@ function resolveOverlaps(structure: Structure, absorber: SiteAtom, atoms: SiteAt
   const extra = new Map<SiteAtom, number>();
   const byX = [absorber, ...atoms].sort((a, b) => a.position[0] - b.position[0]);
   for (let i = 0; i < byX.length; i++) {
-    for (let j = i + 1; j < byX.length && byX[j]!.position[0] - byX[i]!.position[0] < TOO_CLOSE; j++) {
+    for (let j = i + 1; !out.has(byX[i]!) && j < byX.length && byX[j]!.position[0] - byX[i]!.position[0] < TOO_CLOSE; j++) {
       const pair = [byX[i]!, byX[j]!] as const;
       const apart = distance(pair[0].position, pair[1].position);
       if (apart >= TOO_CLOSE || out.has(pair[0]) || out.has(pair[1])) continue;
@@ -274,14 +297,32 @@ const SAME_DISTANCE = 5e-4;
 
 /** Sites of a crystal whose surroundings are the same, distance by distance and, around the nearest atoms, pair by pair, are one. */
 function mergeEquivalent(sites: readonly Site[]): Site[] {
-  const kept: { site: Site; weight: number; count: number; print: Float64Array; elements: string }[] = [];
+  interface Kept {
+    readonly site: Site;
+    readonly print: Float64Array;
+    weight: number;
+    count: number;
+  }
+  const kept: Kept[] = [];
+  // Twins have like elements and their nearest neighbours in one bin or in neighbouring ones, so that none is met with all.
+  const bins = new Map<string, Kept[]>();
   for (const site of sites) {
     const { print, elements } = fingerprint(site);
-    const twin = kept.find((other) => other.elements === elements && mayMerge(other.site, site) && isNear(other.print, print));
+    const bin = Math.floor((site.atoms[1]?.distance ?? 0) / SAME_DISTANCE);
+    const twin = [bin - 1, bin, bin + 1]
+      .flatMap((near) => bins.get(`${near} ${elements}`) ?? [])
+      .find((other) => mayMerge(other.site, site) && isNear(other.print, print));
     if (twin) {
       twin.weight += site.weight;
       twin.count++;
-    } else kept.push({ site, weight: site.weight, count: 1, print, elements });
+      continue;
+    }
+    const one: Kept = { site, weight: site.weight, count: 1, print };
+    kept.push(one);
+    const key = `${bin} ${elements}`;
+    const own = bins.get(key);
+    if (own) own.push(one);
+    else bins.set(key, [one]);
   }
   return kept.map(({ site, weight, count }) =>
     count === 1

@@ -191,7 +191,7 @@ export class XyzFrames {
 
   private readHeader(comment: string): Header {
     const values = new Map<string, string>();
-    for (const [, key, quoted, braced, bare] of comment.matchAll(/([A-Za-z_][\w-]*)\s*=\s*(?:"([^"]*)"|\{([^}]*)\}|(\S+))/g)) {
+    for (const [, key, quoted, braced, bare] of comment.matchAll(/(?<![\w-])([A-Za-z_][\w-]*)\s*=\s*(?:"([^"]*)"|\{([^}]*)\}|(\S+))/g)) {
       values.set(key!.toLowerCase(), quoted ?? braced ?? bare ?? '');
     }
     const scale = this.scaleOf(values);
