@@ -25,6 +25,8 @@ export function readText(path: string): string {
 export function writeFolder(folder: string, files: ReadonlyMap<string, string>): void {
   try {
     for (const [name, content] of files) {
+      // Names are the program's own; one that came from a file must not lead out of the folder.
+      if (!/^[\w-]+(\.[\w-]+)*(\/[\w-]+(\.[\w-]+)*)*$/.test(name)) throw new Error(`"${name}" is no name for a result`);
       const path = join(folder, name);
       mkdirSync(dirname(path), { recursive: true });
       const temporary = `${path}.part-${process.pid}`;

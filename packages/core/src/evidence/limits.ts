@@ -13,3 +13,9 @@ export function checkKRange(kMax: number): void {
       `the data reach k = ${kMax.toPrecision(3)} Å⁻¹, beyond the ${LARGEST_K} that are treated; check the unit, or state a smaller k-max`,
     );
 }
+
+/** @throws {InputError} numbers so large or small that arithmetic on them ends in none */
+export function checkFinite(...series: readonly Float64Array[]): void {
+  if (!series.every((values) => values.every(Number.isFinite)))
+    throw new InputError('the data hold numbers too large or too small to be worked with; check the columns');
+}

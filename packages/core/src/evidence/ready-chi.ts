@@ -2,7 +2,7 @@
 
 import { InputError } from '../errors.js';
 import { uniformKGrid } from '../spectrum/index.js';
-import { checkKRange } from './limits.js';
+import { checkFinite, checkKRange } from './limits.js';
 import { AVERAGING, applyMap, localFit, type SparseMap } from './local-fit.js';
 import { noiseOf } from './noise.js';
 import { pointNoise } from './point-noise.js';
@@ -21,13 +21,18 @@ function samePoints(from: Float64Array, k: Float64Array): SparseMap | undefined 
   };
 }
 
+/** A point an Å⁻¹ over the shortest range, five times over. */
+const FEWEST_POINTS = 20;
+
 /** Ready chi(k): brought onto the grid and averaged; nothing is projected, since the reduction is not known. */
 export function reduceChi(scans: readonly ChiScan[], options: ReduceOptions): Reduction {
   const end = Math.min(...scans.map((scan) => scan.k.at(-1)!));
-  const begin = Math.max(...scans.map((scan) => scan.k[0]!));
+  const begin = Math.max(0, ...scans.map((scan) => scan.k[0]!));
   const kMax = Math.min(options.kMax ?? Infinity, end);
   if (!(kMax - begin >= 4))
     throw new InputError(`chi(k) runs from ${begin.toFixed(2)} to ${kMax.toFixed(2)} Å⁻¹; a range of 4 Å⁻¹ is needed`);
+  const fewest = Math.min(...scans.map((scan) => scan.k.length));
+  if (fewest < FEWEST_POINTS) throw new InputError(`chi(k) of ${fewest} points; ${FEWEST_POINTS} are needed`);
   checkKRange(kMax);
   const k = uniformKGrid(kMax).filter((q) => q >= begin - 1e-9);
   const onGrid = scans.map((scan) => {
@@ -38,6 +43,7 @@ export function reduceChi(scans: readonly ChiScan[], options: ReduceOptions): Re
   const chi = k.map((_, i) => onGrid.reduce((sum, scan) => sum + scan.chi[i]!, 0) / n);
   const { map, sigma } = onGrid[0]!;
   const { noise, sigmaChi } = noiseOf(k, chi, { map, sigma: sigma.map((s) => s / Math.sqrt(n)), repeated: false });
+  checkFinite(chi, sigmaChi);
   const none = new Float64Array(0);
   const zero: readonly [number, number] = [0, 0];
   return {

@@ -12,7 +12,7 @@ import { fourierTransform, K_STEP, kFromEnergyEv, uniformKGrid } from '../spectr
 import { mergeScans } from './align.js';
 import { backgroundProjector } from './background.js';
 import { findEdge, rangesFor } from './edge.js';
-import { checkKRange } from './limits.js';
+import { checkFinite, checkKRange } from './limits.js';
 import { AVERAGING, applyMap, indexBelow, localFit } from './local-fit.js';
 import { noiseOf } from './noise.js';
 import { atomicDecay, type Normalised, normalise } from './normalise.js';
@@ -242,6 +242,7 @@ function reducePoints(
   const sigma = standardError ? standardError.map((s, i) => s / unit[i]!) : single.sigma;
   const { noise, sigmaChi } = noiseOf(k, chi, { map, sigma, repeated: standardError !== undefined });
   const flagged = findGlitches(single, energyEv, lines, (e) => e < e0 - 25 || e > e0 + 40);
+  checkFinite(chi, sigmaChi);
   const along = onPoints(smooth, kPoints);
   const curve = energyEv.map((e, i) => (e < e0 ? preEdge[i]! : postEdge[i]! + unit[i]! * along[i]!));
   return {

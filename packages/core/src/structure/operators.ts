@@ -16,10 +16,13 @@ const TERM = /([+-]?)(?:(\d+\/\d+|\d*\.\d+|\d+\.?)\*?)?([xyz])?/y;
  */
 export function parseOperator(text: string, line?: number): SymmetryOperator {
   const fail = (why: string) =>
-    new ReadError(`${line ? `line ${line}: ` : ''}"${text.trim()}" is no symmetry operator: ${why}; write it like -x,y+1/2,-z`, {
-      ...(line ? { line } : {}),
-      text,
-    });
+    new ReadError(
+      `${line ? `line ${line}: ` : ''}"${text.trim().slice(0, 60)}" is no symmetry operator: ${why}; write it like -x,y+1/2,-z`,
+      {
+        ...(line ? { line } : {}),
+        text,
+      },
+    );
   const rows = text
     .toLowerCase()
     .replace(/["'\s]/g, '')

@@ -278,6 +278,10 @@ export function readXyz(text: string): Structure {
   frames.push(...reader.end());
   const first = frames[0];
   if (!first) throw new ReadError('the file holds no atoms; an XYZ file starts with the number of atoms');
+  if (first.atoms.length === 0)
+    throw new ReadError(`line ${first.line}: all atoms of the first frame are dummies without an element; write symbols like Fe`, {
+      line: first.line,
+    });
   const cellText = ({ cell }: XyzFrame) => cell?.vectors?.join(';');
   const other = frames.find((frame) => cellText(frame) !== cellText(first));
   if (other) {
