@@ -2,7 +2,6 @@
 import { mkdtempSync, readdirSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { CommanderError } from 'commander';
 import * as fc from 'fast-check';
 import { ringtrueProgram } from '../../packages/cli/src/program.js';
 import { SCANS, STRUCTURES } from './corpus.js';
@@ -91,8 +90,9 @@ export async function runCall({ command, input, options }: Call): Promise<number
     });
     code = Number(process.exitCode);
   } catch (error) {
-    if (!(error instanceof CommanderError)) throw error;
-    code = error.exitCode === 0 ? 0 : 2;
+    const { code: kind = '', exitCode } = error as { code?: string; exitCode?: number };
+    if (!kind.startsWith('commander.')) throw error;
+    code = exitCode === 0 ? 0 : 2;
   } finally {
     process.stdout.write = stdout;
     process.stderr.write = stderr;
