@@ -49,8 +49,12 @@ export function shippedLibraries(): Shipped[] {
 }
 
 export function licencesText(): string {
-  const rows = shippedLibraries().map(({ name, version, licence }) => `| ${name} | ${version} | ${licence} |`);
-  return `# Licences of what ships with Ringtrue\n\nMade by \`npm run licences\` from the lock file; Ringtrue itself is MIT (LICENSE).\n\n| library | version | licence |\n| --- | --- | --- |\n${rows.join('\n')}\n`;
+  const rows = [['library', 'version', 'licence'], ...shippedLibraries().map(({ name, version, licence }) => [name, version, licence])];
+  const widths = [0, 1, 2].map((column) => Math.max(...rows.map((row) => row[column]!.length)));
+  const lines = rows.map((row) => `| ${row.map((cell, i) => cell.padEnd(widths[i]!)).join(' | ')} |`);
+  const rule = `| ${widths.map((width) => '-'.repeat(width)).join(' | ')} |`;
+  const table = [lines[0], rule, ...lines.slice(1)].join('\n');
+  return `# Licences of what ships with Ringtrue\n\nMade by \`npm run licences\` from the lock file; Ringtrue itself is MIT (LICENSE).\n\n${table}\n`;
 }
 
 if (process.argv[1] !== undefined && import.meta.url === pathToFileURL(process.argv[1]).href) writeFileSync(LICENCES, licencesText());
