@@ -4,10 +4,13 @@ import { defineConfig } from 'vite';
 export default defineConfig({
   ssr: { noExternal: true, resolve: { conditions: ['source', 'node'], externalConditions: ['node'] } },
   build: {
-    ssr: 'src/main.ts',
+    ssr: true,
     target: 'node20',
     sourcemap: true,
     emptyOutDir: false,
-    rollupOptions: { output: { entryFileNames: 'ringtrue.js' } },
+    rollupOptions: {
+      input: { ringtrue: 'src/main.ts', 'ensemble-worker': 'src/ensemble-worker.ts' },
+      output: { entryFileNames: '[name].js', chunkFileNames: '[name]-shared.js' },
+    },
   },
 });

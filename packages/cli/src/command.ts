@@ -18,6 +18,17 @@ export function aboutFile<T>(file: string, work: () => T): T {
   }
 }
 
+/** The same for work that takes its time. */
+export async function aboutFileLater<T>(file: string, work: () => Promise<T>): Promise<T> {
+  try {
+    return await work();
+  } catch (error) {
+    return aboutFile(file, () => {
+      throw error;
+    });
+  }
+}
+
 /** 2: the input or the options; 1: a fault of the program. */
 export function exitCodeOf(error: unknown): 1 | 2 {
   return error instanceof UsageError || error instanceof InputError || error instanceof ReadError ? 2 : 1;

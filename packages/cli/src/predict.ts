@@ -4,17 +4,19 @@ import { type Prediction, type PredictOptions, predict, readStructure, VERSION }
 import { chiInK, chiInR } from '@ringtrue/figures';
 import { csvTable, predictionHtml, tablesOf } from '@ringtrue/report';
 import { type Command, Option } from 'commander';
-import { aboutFile, runCommand } from './command.js';
+import { aboutFile, runCommand, UsageError } from './command.js';
+import { computeEnsemble, type EnsembleFlags } from './ensemble.js';
 import { number } from './evidence-options.js';
 import { readText, writeFolder } from './files.js';
 import { toJson } from './json.js';
 import { showProgress } from './progress.js';
 import { plain, smallPlot, textTable } from './terminal.js';
 
-interface Flags extends Partial<PredictOptions> {
+interface Flags extends Partial<PredictOptions>, EnsembleFlags {
   readonly absorber: string;
   readonly json?: boolean;
   readonly out?: string;
+  readonly ensemble?: boolean;
 }
 
 export function addPredict(program: Command): void {
@@ -38,11 +40,23 @@ export function addPredict(program: Command): void {
     .option('--k-max <k>', 'largest wave number, Å⁻¹ (default 15)', number)
     .option('--s02 <value>', 'passive-electron factor S0² (default 0.82)', number)
     .option('--e0 <eV>', "shift of the energy origin, eV, positive when the theory's zero lies above the data's (default 0)", number)
+    .option('--ensemble', 'average chi over all frames of a trajectory or models of an entry; no thermal model')
+    .option(
+      '--jobs <n>',
+      'with --ensemble: workers (default: as many as the machine runs at once); the result is the same to the last bit',
+      number,
+    )
+    .option(
+      '--renew <frames>',
+      'with --ensemble: phase shifts and paths anew for every so many frames; the change it makes is told',
+      number,
+    )
+    .option('--exact', 'with --ensemble: multiple scattering computed in every frame, some 100 times slower')
     .option('--path-signals', 'amplitude and phase of every path in the JSON')
     .option('--json', 'print one JSON document and nothing else on standard output')
     .option('--out <folder>', 'write result.json, report.html, figures and tables into a folder')
     .addHelpText('after', EXAMPLES)
-    .action((file: string, flags: Flags) => runCommand(() => run(file, flags)));
+    .action((file: string, flags: Flags, command: Command) => runCommand(() => run(file, flags, command)));
 }
 
 const EXAMPLES = `
@@ -50,11 +64,23 @@ Examples:
   ringtrue predict demo-structures/tideglass.cif --absorber Mn --temperature 15 --debye-temperature 500
   ringtrue predict demo-structures/redoxin-site.xyz --absorber Fe --json > redoxin.json
   ringtrue predict demo-structures/tideglass.cif --absorber Mn --radius 6 --out tideglass-prediction
+  ringtrue predict trajectory.xyz --absorber Fe --ensemble --jobs 4
 
 A prediction that agrees with a measurement shows consistency; it is no proof of a structure.`;
 
-function run(file: string, { json, out, ...options }: Flags): void {
-  const prediction = compute(file, { ...options, bands: json === true || out !== undefined });
+async function run(file: string, { json, out, ensemble, jobs, renew, exact, ...options }: Flags, command: Command): Promise<void> {
+  const own = Object.entries({ jobs, renew, exact }).find(([, value]) => value !== undefined);
+  if (own && !ensemble) throw new UsageError(`--${own[0]} goes with --ensemble`);
+  if (ensemble && command.getOptionValueSource('thermal') === 'cli')
+    throw new UsageError('--ensemble takes the disorder from the frames; leave --thermal out');
+  const { thermal: _, ...frameOptions } = options;
+  const prediction = ensemble
+    ? await computeEnsemble(file, frameOptions, {
+        ...(jobs === undefined ? {} : { jobs }),
+        ...(renew === undefined ? {} : { renew }),
+        ...(exact === undefined ? {} : { exact }),
+      })
+    : compute(file, { ...options, bands: json === true || out !== undefined });
   if (out !== undefined) writeFolder(out, filesOf(prediction));
   if (json) {
     process.stdout.write(`${toJson(prediction)}\n`);
@@ -64,7 +90,7 @@ function run(file: string, { json, out, ...options }: Flags): void {
   }
 }
 
-function compute(file: string, options: Omit<Flags, 'json' | 'out'>): Prediction {
+function compute(file: string, options: Omit<Flags, 'json' | 'out' | 'ensemble' | keyof EnsembleFlags>): Prediction {
   const text = readText(file);
   const progress = showProgress();
   const context = {
@@ -90,37 +116,64 @@ function filesOf(prediction: Prediction): Map<string, string> {
 
 /** What a reader wants first, in words and three tables. */
 function summary(prediction: Prediction, out: string | undefined): string {
-  const { structure, options, absorbers, scattering, shells, paths, warnings, k, chi, timing } = prediction;
+  const { structure, options, absorbers, scattering, shells, paths, warnings, k, chi, timing, ensemble } = prediction;
   const share = (value: number): string => `${(100 * value).toFixed(1)} %`;
   const squared = (value: number): string => value.toFixed(5);
   const weighted = k.map((value, i) => value * value * chi[i]!).filter((_, i) => k[i]! >= 2);
+  const hasBound = shells.some(({ bFactorBound }) => bFactorBound !== undefined);
   const shown = [...paths].sort((a, b) => b.share - a.share).slice(0, 12);
   return [
     `${plain(structure.file)}: ${structure.atoms} atoms, ${structure.format}${structure.title ? `, "${plain(structure.title)}"` : ''}`,
-    `${absorbers.length} absorbing ${absorbers.length === 1 ? 'site' : 'sites'}: ${absorbers.map(({ label, weight }) => `${plain(label)} (${share(weight)})`).join(', ')}; ${options.edge} edge, ${options.temperature} K, S0² ${options.s02}`,
+    `${absorbers.length} absorbing ${absorbers.length === 1 ? 'site' : 'sites'}: ${absorbers.map(({ label, weight }) => `${plain(label)} (${share(weight)})`).join(', ')}; ${options.edge} edge, S0² ${options.s02}`,
+    ...disorderLines(prediction),
     `Fermi level ${scattering.fermiLevelEv.toFixed(2)} eV, interstitial ${scattering.interstitialPotentialEv.toFixed(2)} eV; spheres (bohr): ${scattering.atoms.map(({ element, role, muffinTinRadius }) => `${element}${role === 'absorber' ? '*' : ''} ${muffinTinRadius.toFixed(3)}`).join(', ')}`,
     '',
     textTable(
-      ['shell', 'N', 'mean R (Å)', 'thermal σ² (Å²)', 'static σ² (Å²)', 'share'],
+      [
+        'shell',
+        'N',
+        'mean R (Å)',
+        `${ensemble ? 'frames' : 'thermal'} σ² (Å²)`,
+        'static σ² (Å²)',
+        'C3 (10⁻⁵ Å³)',
+        'hidden by one shell',
+        ...(hasBound ? ['B-factor bound (Å²)'] : []),
+        'share',
+      ],
       shells.map((s) => [
         s.label,
         s.count.toFixed(1),
         s.meanDistance.toFixed(4),
         squared(s.sigma2.thermal),
         squared(s.sigma2.static),
+        (1e5 * s.thirdCumulant).toFixed(2),
+        share(s.hiddenByOneShell),
+        ...(hasBound ? [s.bFactorBound === undefined ? '' : squared(s.bFactorBound)] : []),
         share(s.share),
       ]),
     ),
     '',
     textTable(
-      ['strongest paths', 'N', 'half length (Å)', 'σ² (Å²)', 'share'],
-      shown.map((p) => [p.label, p.degeneracy.toFixed(1), p.halfLength.toFixed(4), squared(p.sigma2.thermal), share(p.share)]),
+      ensemble
+        ? ['strongest paths', 'N', 'half length (Å)', 'σ² (Å²)', '±', 'C3 (10⁻⁵ Å³)', 'C4 (10⁻⁶ Å⁴)', 'share']
+        : ['strongest paths', 'N', 'half length (Å)', 'σ² (Å²)', 'from', 'share'],
+      shown.map((p) => [
+        p.label,
+        p.degeneracy.toFixed(1),
+        p.halfLength.toFixed(4),
+        squared(p.sigma2.thermal),
+        ...(p.cumulants
+          ? [squared(p.cumulants.error.variance), (1e5 * p.cumulants.third).toFixed(2), (1e6 * p.cumulants.fourth).toFixed(2)]
+          : [p.sigma2.from]),
+        share(p.share),
+      ]),
     ),
     ...(paths.length > shown.length
       ? [
           `… and ${paths.length - shown.length} more paths (--json or --out lists all); weaker ones left out carry at most ${share(prediction.neglected)} of the signal`,
         ]
       : []),
+    ...(hasBound ? ['B-factor bound: U of both atoms as if they moved independently; above the true σ², shown and never added.'] : []),
     '',
     `k²χ(k) from 2 to ${k.at(-1)!.toFixed(1)} Å⁻¹`,
     smallPlot(weighted, 70, 10),
@@ -130,4 +183,25 @@ function summary(prediction: Prediction, out: string | undefined): string {
     ...(out === undefined ? [] : [`Written to ${plain(out)}`]),
     '',
   ].join('\n');
+}
+
+/** Where the disorder comes from, with temperature and inputs, and what would suit each site. */
+function disorderLines({ absorbers, ensemble }: Prediction): string[] {
+  const percent = (value: number): string => `${(100 * value).toFixed(2)} %`;
+  const lines = absorbers.map(({ thermal: { model, temperature, inputs } }) => {
+    const words = Object.entries(inputs).map(
+      ([name, value]) => `${name} ${typeof value === 'number' ? Number(value.toPrecision(5)) : value}`,
+    );
+    return `Disorder: ${model}${temperature === undefined ? '' : ` at ${temperature} K`}${words.length ? ` (${words.join('; ')})` : ''}`;
+  });
+  lines.push(...absorbers.map(({ thermal: { suggested } }) => `Model for this kind of structure: ${suggested.model}. ${suggested.reason}`));
+  if (ensemble) {
+    const { frames, parts, multipleScattering, expansionError, testFrames, beyondGaussian, renewed } = ensemble;
+    lines.push(
+      `${frames} frames averaged, error of χ from ${parts} parts. Multiple scattering: ${multipleScattering}${multipleScattering === 'expanded' ? `, off by ${percent(expansionError)} rms of k²χ in single frames (${testFrames} tested)` : ''}.`,
+      `A Gaussian sum of the same σ² over the mean surroundings would differ by ${percent(beyondGaussian)} rms of k²χ.`,
+    );
+    if (renewed) lines.push(`Phase shifts and paths renewed every ${renewed.every} frames: k²χ changes by ${percent(renewed.change)} rms.`);
+  }
+  return [...new Set(lines)].map(plain);
 }

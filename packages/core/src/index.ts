@@ -42,8 +42,19 @@ export {
   type SiteValence,
   type ValenceEntry,
 } from './judgement/index.js';
-export { type PredictContext, predict } from './predict/predict.js';
-export type { PredictedNeighbour, PredictedPath, PredictedShell, Prediction, PredictOptions } from './predict/types.js';
+export type { PredictContext } from './predict/describe.js';
+export {
+  BLOCK_FRAMES,
+  EnsembleAverage,
+  type EnsembleOptions,
+  type EnsemblePlan,
+  planEnsemble,
+  predictEnsemble,
+} from './predict/ensemble.js';
+export { type EnsembleFrame, EnsembleSurvey, frameSize, packFrame } from './predict/ensemble-frames.js';
+export { type BlockPlan, type BlockSums, blockSums } from './predict/ensemble-sums.js';
+export { predict } from './predict/predict.js';
+export type { EnsembleSummary, PredictedNeighbour, PredictedPath, PredictedShell, Prediction, PredictOptions } from './predict/types.js';
 export type { SelfEnergyName } from './scattering/types.js';
 export {
   backTransform,
@@ -67,6 +78,7 @@ export {
   type SiteOptions,
   type SitesDescription,
   type Structure,
+  structureOfFrame,
   type XyzFrame,
   XyzFrames,
 } from './structure/index.js';

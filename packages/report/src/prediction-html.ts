@@ -23,8 +23,7 @@ export function predictionHtml(prediction: Prediction): string {
     ['Structure', `${structure.file} (${structure.format}, ${structure.atoms} atoms) ${structure.title}`],
     ['Absorber', absorbers.map(({ label, weight }) => `${label} (weight ${weight.toFixed(3)})`).join(', ')],
     ['Edge', options.edge],
-    ['Temperature', `${options.temperature} K`],
-    ['Thermal disorder', thermalWords(options)],
+    ...disorderRows(prediction),
     ['Self-energy', options.selfEnergy],
     ['Longest half path', `${options.radius} Å`],
     ['S0²', String(options.s02)],
@@ -56,8 +55,31 @@ function htmlTable({ title, columns, rows }: Table): string {
 
 const number = (value: number): string => (Number.isInteger(value) ? String(value) : value.toPrecision(4));
 
+/** Where the disorder comes from: the model with its temperature and inputs, and what would suit the structure, site by site. */
+function disorderRows({ absorbers, options, ensemble }: Prediction): [string, string][] {
+  const rows = absorbers.flatMap(({ thermal: { model, temperature, inputs, suggested } }): [string, string][] => {
+    const words = Object.entries(inputs).map(([name, value]) => `${name}: ${value}`);
+    const named = model === 'ensemble' ? 'average over frames' : thermalWords({ ...options, thermal: model });
+    return [
+      ['Disorder', `${named}${temperature === undefined || model === 'none' ? '' : `, at ${temperature} K`}`],
+      ...(words.length > 0 ? [['Its inputs', words.join('; ')] as [string, string]] : []),
+      ['Model for this kind of structure', `${suggested.model}. ${suggested.reason}`],
+    ];
+  });
+  if (ensemble) {
+    const percent = (value: number): string => `${(100 * value).toFixed(2)} %`;
+    rows.push(
+      ['Multiple scattering', `${ensemble.multipleScattering}, error of one frame ${percent(ensemble.expansionError)} rms of k²χ`],
+      ['Beyond a Gaussian sum', `${percent(ensemble.beyondGaussian)} rms of k²χ`],
+    );
+    if (ensemble.renewed)
+      rows.push([`Renewed every ${ensemble.renewed.every} frames`, `changes k²χ by ${percent(ensemble.renewed.change)} rms`]);
+  }
+  return [...new Map(rows.map((row) => [row.join('\n'), row])).values()];
+}
+
 /** The thermal model in words, with the inputs the user gave; what was assumed instead stands among the notes. */
-function thermalWords({ thermal, debyeTemperature, temperature }: Prediction['options']): string {
+function thermalWords({ thermal, debyeTemperature }: Prediction['options']): string {
   const debye =
     debyeTemperature === undefined
       ? 'correlated Debye model, Debye temperature assumed'
@@ -68,5 +90,5 @@ function thermalWords({ thermal, debyeTemperature, temperature }: Prediction['op
     einstein: `Einstein oscillators by bond, beyond them the ${debye}`,
     none: 'none',
   };
-  return `${words[thermal]}${thermal === 'none' ? '' : `, at ${temperature} K`}`;
+  return words[thermal];
 }

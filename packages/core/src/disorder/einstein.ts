@@ -36,20 +36,23 @@ export function einsteinByBond({ temperature, beyond, frequencies = {} }: Einste
     for (const key of [`${a}-${b}`, `${b}-${a}`]) own.set(key, wavenumber);
   }
 
-  const wavenumberOf = (route: readonly ThermalVertex[]): number | undefined => {
+  const oscillatorOf = (route: readonly ThermalVertex[]): { wavenumber: number; words: string } | undefined => {
     if (route.length !== 2) return undefined;
     const [a, b] = [route[0]!, route[1]!];
     const distance = Math.hypot(...a.position.map((x, c) => x - b.position[c]!));
+    if (!(distance <= longestBond(a.element, b.element))) return undefined;
+    const given = own.get(`${a.element}-${b.element}`);
+    if (given !== undefined) return { wavenumber: given, words: `${given} cm⁻¹ (given)` };
     const bond = bondKind(a.element, b.element, distance);
-    return distance <= longestBond(a.element, b.element) ? (own.get(`${a.element}-${b.element}`) ?? bond?.wavenumber) : undefined;
+    return bond && { wavenumber: bond.wavenumber, words: `${bond.kind}, ${bond.wavenumber} cm⁻¹ (${bond.range.join('–')})` };
   };
   const sigma2 = (route: readonly ThermalVertex[], kelvin: number, otherwise: () => number): number => {
     checkMasses(route);
     routeGradient(route); // the geometry is checked alike in every model
-    const wavenumber = wavenumberOf(route);
-    if (wavenumber === undefined) return otherwise();
+    const oscillator = oscillatorOf(route);
+    if (!oscillator) return otherwise();
     const [m, n] = [route[0]!.mass, route[1]!.mass];
-    return meanSquare((m * n) / (m + n), wavenumber * KELVIN_PER_WAVENUMBER, kelvin);
+    return meanSquare((m * n) / (m + n), oscillator.wavenumber * KELVIN_PER_WAVENUMBER, kelvin);
   };
 
   return {
@@ -63,6 +66,7 @@ export function einsteinByBond({ temperature, beyond, frequencies = {} }: Einste
     },
     sigma2: (route) => sigma2(route, temperature, () => beyond.sigma2(route)),
     sigma2AtZero: (route) => sigma2(route, 0, () => beyond.sigma2AtZero(route)),
+    origin: (route) => oscillatorOf(route)?.words ?? beyond.origin?.(route) ?? beyond.name,
   };
 }
 

@@ -25,4 +25,6 @@ export interface ThermalModel {
   sigma2(route: readonly ThermalVertex[]): number;
   /** The zero-temperature value for the same route, Å²; needed by the third cumulant. */
   sigma2AtZero(route: readonly ThermalVertex[]): number;
+  /** Which part of the model this route's number comes from, where it has parts. */
+  origin?(route: readonly ThermalVertex[]): string;
 }

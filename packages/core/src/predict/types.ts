@@ -4,6 +4,7 @@
  */
 
 import type { Edge } from '../atom/types.js';
+import type { Cumulants, ThermalModel, ThermalSuggestion } from '../disorder/index.js';
 import type { Diagnostic } from '../errors.js';
 import type { SelfEnergyName } from '../scattering/types.js';
 
@@ -39,8 +40,10 @@ export interface PredictedPath {
   /** Å */
   readonly halfLength: number;
   readonly atoms: readonly string[];
-  /** Å² */
-  readonly sigma2: { readonly thermal: number; readonly static: number };
+  /** Å²; `from` says which model, or which oscillator of it, the thermal part comes from. */
+  readonly sigma2: { readonly thermal: number; readonly static: number; readonly from: string };
+  /** Of the half length over the frames, where an ensemble was averaged: Å, Å², Å³, Å⁴. */
+  readonly cumulants?: Cumulants;
   /** Part of ∫|k³χ|, all paths' shares summing to 1. */
   readonly share: number;
   /** With `pathSignals`: Å⁻¹ grid, |f_eff| in Å, phase in rad. */
@@ -58,7 +61,24 @@ export interface PredictedShell {
   readonly meanDistance: number;
   /** Å² */
   readonly sigma2: { readonly thermal: number; readonly static: number; readonly total: number };
+  /** Third cumulant of the whole shell, Å³. */
+  readonly thirdCumulant: number;
+  /** What one Gaussian shell of the same N, mean R and total σ² would hide: rms of its k³χ against the explicit sum, relative. */
+  readonly hiddenByOneShell: number;
+  /** From the B factors of both atoms taken as independent, Å²: an upper bound of the total σ², never added to it. */
+  readonly bFactorBound?: number;
   readonly share: number;
+}
+
+/** Where the thermal σ² of one site come from. */
+export interface PredictedThermal {
+  readonly model: ThermalModel['name'] | 'ensemble';
+  /** K; absent where frames brought their own motion. */
+  readonly temperature?: number;
+  /** What the model assumed, in words and numbers. */
+  readonly inputs: Readonly<Record<string, number | string>>;
+  /** What this kind of structure would be given, and why. */
+  readonly suggested: ThermalSuggestion;
 }
 
 export interface PredictedNeighbour {
@@ -79,6 +99,23 @@ export interface Bands {
   readonly high95: Float64Array;
 }
 
+/** What was averaged, and how well. */
+export interface EnsembleSummary {
+  readonly frames: number;
+  /** Standard error of χ at each k, from the spread of `parts` successive parts of the frames. */
+  readonly chiError: Float64Array;
+  readonly parts: number;
+  /** How multiple-scattering amplitudes followed the geometry. */
+  readonly multipleScattering: 'none' | 'exact' | 'expanded';
+  /** Expanded against exact, rms of k²χ of a single frame relative to the whole, and the test frames it comes from; 0 when exact. */
+  readonly expansionError: number;
+  readonly testFrames: number;
+  /** rms of k²(χ − the Gaussian sum of mean half lengths and variances over the mean surroundings), relative to χ. */
+  readonly beyondGaussian: number;
+  /** Phase shifts and paths renewed every so many frames; the change it made, rms of k²χ relative to those of the mean of all. */
+  readonly renewed?: { readonly every: number; readonly change: number };
+}
+
 export interface Prediction {
   readonly program: { readonly name: 'ringtrue'; readonly version: string };
   readonly structure: { readonly file: string; readonly format: string; readonly atoms: number; readonly title: string };
@@ -88,6 +125,7 @@ export interface Prediction {
     readonly element: string;
     readonly weight: number;
     readonly neighbours: readonly PredictedNeighbour[];
+    readonly thermal: PredictedThermal;
   }[];
   readonly scattering: {
     /** bohr */
@@ -108,6 +146,8 @@ export interface Prediction {
   readonly chi: Float64Array;
   readonly paths: readonly PredictedPath[];
   readonly shells: readonly PredictedShell[];
+  /** Where frames were averaged. */
+  readonly ensemble?: EnsembleSummary;
   /** With `bands`. */
   readonly bands?: Bands;
   readonly transform: {

@@ -27,4 +27,4 @@ export type {
   Vec3,
 } from './types.js';
 export { bondValence, bondValenceSums, type ValenceBond, type ValenceSum } from './valence.js';
-export { type XyzFrame, XyzFrames } from './xyz.js';
+export { structureOfFrame, type XyzFrame, XyzFrames } from './xyz.js';

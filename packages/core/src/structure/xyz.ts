@@ -291,15 +291,20 @@ export function readXyz(text: string): Structure {
       line: other.line,
     });
   }
+  return { ...structureOfFrame(first, reader.diagnostics), moreFrames: frames.slice(1).map((frame) => frame.atoms) };
+}
+
+/** One frame as a structure of its own. */
+export function structureOfFrame({ atoms, comment, cell, repeats }: XyzFrame, diagnostics: readonly Diagnostic[]): Structure {
   return {
     format: 'xyz',
-    title: first.comment,
-    atoms: first.atoms,
-    moreFrames: frames.slice(1).map((frame) => frame.atoms),
-    ...(first.cell ? { cell: first.cell } : {}),
-    ...(first.repeats ? { repeats: first.repeats } : {}),
+    title: comment,
+    atoms,
+    moreFrames: [],
+    ...(cell ? { cell } : {}),
+    ...(repeats ? { repeats } : {}),
     operators: [IDENTITY],
-    diagnostics: reader.diagnostics,
+    diagnostics,
   };
 }
 
