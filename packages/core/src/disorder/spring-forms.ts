@@ -13,7 +13,7 @@
  * **Fractional bonds.** The molecular forms are made for whole bonds. Where an atom shares its valence among many
  * neighbours, as in a metal or an ionic crystal, the constant falls with the bond order (Gordy: k ∝ n); Lindh's bends and
  * torsions fall with the product of the orders of their bonds. `orderedUff` joins the two: UFF constants times
- * min(1, n), for a bend the product of both. No number in it is fitted here; the scores stand in the spring tests.
+ * min(1, n), for a bend the product of both, n lowered where an anion's valence is shared (spring-terms.ts). No number in it is fitted here; the scores stand in the spring tests.
  */
 
 import { isMetal } from '../structure/bonding.js';
@@ -21,10 +21,10 @@ import { springConstantsOf } from './spring-parameters.js';
 
 export interface SpringForm {
   readonly name: string;
-  /** mdyn/Å. @param r Å */
-  stretch(a: string, b: string, r: number): number;
-  /** mdyn Å/rad² at j of i–j–k. @param cosine of the angle */
-  bend(i: string, j: string, k: string, rij: number, rjk: number, cosine: number): number;
+  /** mdyn/Å. @param r Å @param order of the bond, ≤ 1 */
+  stretch(a: string, b: string, r: number, order: number): number;
+  /** mdyn Å/rad² at j of i–j–k. @param cosine of the angle @param orders product of the two bonds' orders */
+  bend(i: string, j: string, k: string, rij: number, rjk: number, cosine: number, orders: number): number;
 }
 
 const MDYN_PER_KCAL = 1 / 143.9325; // kcal/mol/Å² → mdyn/Å, and kcal/mol → mdyn Å
@@ -52,8 +52,8 @@ function uffBend(i: string, k: string, rij: number, rjk: number, cosine: number)
 
 export const orderedUff: SpringForm = {
   name: 'Rappé et al. 1992, times Pauling bond order',
-  stretch: (a, b, r) => uffStretch(a, b, r) * bondOrder(a, b, r),
-  bend: (i, j, k, rij, rjk, cosine) => uffBend(i, k, rij, rjk, cosine) * bondOrder(i, j, rij) * bondOrder(j, k, rjk),
+  stretch: (a, b, r, order) => uffStretch(a, b, r) * order,
+  bend: (i, _j, k, rij, rjk, cosine, orders) => uffBend(i, k, rij, rjk, cosine) * orders,
 };
 
 export const plainUff: SpringForm = {

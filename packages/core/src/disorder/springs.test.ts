@@ -82,7 +82,7 @@ test('rigid motions cost nothing: below 1e-6 of the largest before projection', 
 
 test('a pair is one oscillator', () => {
   const body: SpringBody = { atoms: [atomAt('C', [0, 0, 0]), atomAt('O', [1.13, 0, 0])] };
-  const k = orderedUff.stretch('C', 'O', 1.13);
+  const k = orderedUff.stretch('C', 'O', 1.13, 1);
   const mu = (MASS['C']! * MASS['O']!) / (MASS['C']! + MASS['O']!);
   const model = springNetwork(body, { temperature: 0 });
   // ħ/(2μω) with ω² = k/μ; 1 mdyn/Å = 100 N/m.
@@ -195,6 +195,23 @@ test('a finer mesh over the zone changes σ² of copper and ZnS by less than 2 %
       expectNear(coarse!.sigma2(r), fine!.sigma2(r), { rel: n === 0 ? 0.005 : 0.02, label: `${s.element} ${s.r.toFixed(2)}` });
     }
   }
+});
+
+test("an anion's valence is shared among its metals, a ligand's donor bond is not weakened", () => {
+  const stiffness = (body: SpringBody, a: string, b: string) =>
+    springTerms(body, orderedUff).flatMap(({ k, atoms }) => {
+      const pair = atoms.map((i) => body.atoms[i]!.element);
+      return pair.length === 2 && pair.includes(a) && pair.includes(b) ? [k] : [];
+    })[0]!;
+  // NaCl at 2.82 Å: Pauling order 10^((1.55 + 0.99 − 2.82)/0.6) = 0.3415, six bonds; √(1/2.049) of it, from a valence of 1.
+  const order = 10 ** ((2.54 - 2.82) / 0.6);
+  const wanted = orderedUff.stretch('Na', 'Cl', 2.82, order * Math.sqrt(1 / (6 * order)));
+  expectNear(stiffness(crystals.rocksalt('Na', 'Cl', 5.64), 'Na', 'Cl'), wanted, { rel: 1e-9, label: 'NaCl' });
+  // Water on a metal: O has given both bonds to its hydrogens, and a lone pair besides.
+  const aqua: SpringBody = {
+    atoms: [atomAt('Fe', [0, 0, 0]), atomAt('O', [2.1, 0, 0]), atomAt('H', [2.7, 0.75, 0]), atomAt('H', [2.7, -0.75, 0])],
+  };
+  expectNear(stiffness(aqua, 'Fe', 'O'), orderedUff.stretch('Fe', 'O', 2.1, 10 ** ((1.79 - 2.1) / 0.6)), { rel: 1e-9, label: 'Fe–OH₂' });
 });
 
 const operator = (...translation: number[]) => ({

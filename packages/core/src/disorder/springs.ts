@@ -43,10 +43,9 @@ const FREE = 1e-3;
 /**
  * Thermal model of a molecule (free), a cluster (held at its edge) or a crystal (repeating by `body.lattice`).
  *
- * Measured, nothing fitted: first-shell σ² of copper 0.0031 (10 K) and 0.0086 Å² (300 K), of ZnS 0.0028 and 0.0052;
- * 19 stretching frequencies within 11 % rms of handbook values, 12 bends 23 %, the tops of 13 phonon spectra 20 %
- * (test/external/vibrations.test.ts). Known to fall short: iron, nickel, platinum, germanium and TiO2 come out 15–40 % too
- * high in frequency, bulk moduli of metals but iron and nickel some 10–45 % low, bends 15–60 % high in oxyanions and CO2.
+ * Measured, nothing fitted: docs/disorder-accuracy.md. In short: stretching frequencies of molecules 11 % rms, bends 23 %, optical
+ * phonons of crystals 25 %; first-shell σ² of Cu, Ag, Au, ZnS, Cr2O3 within the scatter of the literature. Known to fall short:
+ * iron, nickel, platinum, germanium, rutile and oxides of alkaline earths come out 15–100 % too high in frequency.
  *
  * @throws {InputError} no or one atom, an element without constants, atoms on top of each other, a mass missing, parts
  *   that no spring joins
