@@ -121,18 +121,51 @@ export interface PlainRoute {
   readonly l0: number;
   /** e^{2iδ} of the absorber. */
   readonly absorber: Complex;
+  /** Unit vector of the electric field; absent: the mean over directions. */
+  readonly polarisation?: readonly number[];
 }
 
-/** A of a closed route; with `polarisation` (a unit vector, l0 = 1) for that direction of the electric field instead of the mean. */
-export function plainAmplitude({ positions, t, p, l0, absorber }: PlainRoute): Complex {
+/**
+ * Final states that a dipole transition reaches from each state (l0 − 1, m') of the core level: ⟨l0 m|ε·r̂|l0 − 1, m'⟩ with
+ * ε·r̂ = √(4π/3) Σ_q ε_q* Y_1q, scaled so that Σ_{mm'} |·|² = 2 l0 + 1. Without a direction: each |l0 m⟩ once.
+ */
+function finalStates(l0: number, polarisation?: readonly number[]): Complex[][] {
+  if (!polarisation)
+    return Array.from({ length: 2 * l0 + 1 }, (_, m) => Array.from({ length: 2 * l0 + 1 }, (__, n) => ({ re: m === n ? 1 : 0, im: 0 })));
+  const [x, y, z] = polarisation as [number, number, number];
+  const s = Math.SQRT1_2;
+  const conjugate: readonly Complex[] = [
+    { re: s * x, im: s * y },
+    { re: z, im: 0 },
+    { re: -s * x, im: s * y },
+  ];
+  const li = l0 - 1;
+  const states = Array.from({ length: 2 * li + 1 }, (_, i) =>
+    Array.from({ length: 2 * l0 + 1 }, (__, n): Complex => {
+      const [m, mi] = [n - l0, i - li];
+      const q = m - mi;
+      if (Math.abs(q) > 1) return { re: 0, im: 0 };
+      const factor = (m % 2 ? -1 : 1) * threeJ(l0, 1, li, -m, q, mi);
+      const e = conjugate[q + 1]!;
+      return { re: factor * e.re, im: factor * e.im };
+    }),
+  );
+  let norm = 0;
+  for (const state of states) for (const { re, im } of state) norm += re * re + im * im;
+  const scale = Math.sqrt((2 * l0 + 1) / norm);
+  return states.map((state) => state.map(({ re, im }) => ({ re: scale * re, im: scale * im })));
+}
+
+/** A of a closed route. */
+export function plainAmplitude({ positions, t, p, l0, absorber, polarisation }: PlainRoute): Complex {
   const N = positions.length;
   const ordersOf = (i: number): number[] => (i % N === 0 ? [l0] : t[i - 1]!.map((_, l) => l));
   const apart = (to: number, from: number): number[] => positions[from]!.map((x, c) => x - positions[to]![c]!);
   let total: Complex = { re: 0, im: 0 };
-  // wave[m0] holds the coefficients at the site reached, starting from channel (l0, m0)
+  // wave holds the coefficients at the site reached, starting from one final state of the transition
   const legs = Array.from({ length: N }, (_, i) => propagator(apart((i + 1) % N, i), p, ordersOf(i + 1), ordersOf(i)));
-  for (let m0 = -l0; m0 <= l0; m0++) {
-    let wave = new Map<number, Complex>([[index(l0, m0), { re: 1, im: 0 }]]);
+  for (const state of finalStates(l0, polarisation)) {
+    let wave = new Map<number, Complex>(state.map((value, n) => [index(l0, n - l0), value]));
     for (let i = 0; i < N; i++) {
       const arrived = new Map<number, Complex>();
       for (const [row, columns] of legs[i]!) {
@@ -143,7 +176,9 @@ export function plainAmplitude({ positions, t, p, l0, absorber }: PlainRoute): C
       }
       wave = arrived;
     }
-    total = plus(total, wave.get(index(l0, m0))!);
+    state.forEach(({ re, im }, n) => {
+      total = plus(total, times({ re, im: -im }, wave.get(index(l0, n - l0))!));
+    });
   }
   const mean = times(times({ re: 0, im: 1 }, absorber), total);
   return { re: mean.re / (2 * l0 + 1), im: mean.im / (2 * l0 + 1) };

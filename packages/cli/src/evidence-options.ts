@@ -27,6 +27,14 @@ export function number(text: string): number {
   return value;
 }
 
+/** "0,0,1" */
+export function vector(text: string): readonly [number, number, number] {
+  const parts = text.split(',').map((part) => (part.trim() === '' ? Number.NaN : Number(part)));
+  if (parts.length !== 3 || !parts.every(Number.isFinite) || parts.every((part) => part === 0))
+    throw new InvalidArgumentError(`three numbers like 0,0,1, not all 0, are wanted, got "${plain(text)}".`);
+  return parts as unknown as readonly [number, number, number];
+}
+
 /** "-150,-30" */
 export function range(text: string): readonly [number, number] {
   const parts = text.split(',').map((part) => (part.trim() === '' ? Number.NaN : Number(part)));

@@ -6,7 +6,7 @@ import { csvTable, predictionHtml, tablesOf } from '@ringtrue/report';
 import { type Command, Option } from 'commander';
 import { aboutFile, runCommand, UsageError } from './command.js';
 import { computeEnsemble, type EnsembleFlags } from './ensemble.js';
-import { number } from './evidence-options.js';
+import { number, vector } from './evidence-options.js';
 import { readText, writeFolder } from './files.js';
 import { toJson } from './json.js';
 import { showProgress } from './progress.js';
@@ -37,6 +37,11 @@ export function addPredict(program: Command): void {
     )
     .option('--radius <angstrom>', 'longest half path length, Å (default 5)', number)
     .option('--max-legs <n>', 'most legs of a path, 2 to 5 (default 4)', number)
+    .option(
+      '--electric-vector <x,y,z>',
+      "polarised light on an oriented crystal: its electric vector in the file's Cartesian axes (a along x, b in the xy plane); default: averaged",
+      vector,
+    )
     .option('--k-max <k>', 'largest wave number, Å⁻¹ (default 15)', number)
     .option('--s02 <value>', 'passive-electron factor S0² (default 0.82)', number)
     .option('--e0 <eV>', "shift of the energy origin, eV, positive when the theory's zero lies above the data's (default 0)", number)
@@ -65,6 +70,7 @@ Examples:
   ringtrue predict demo-structures/redoxin-site.xyz --absorber Fe --json > redoxin.json
   ringtrue predict demo-structures/tideglass.cif --absorber Mn --radius 6 --out tideglass-prediction
   ringtrue predict trajectory.xyz --absorber Fe --ensemble --jobs 4
+  ringtrue predict demo-structures/tideglass.cif --absorber Mn --electric-vector 0,0,1
 
 A prediction that agrees with a measurement shows consistency; it is no proof of a structure.`;
 
@@ -124,7 +130,7 @@ function summary(prediction: Prediction, out: string | undefined): string {
   const shown = [...paths].sort((a, b) => b.share - a.share).slice(0, 12);
   return [
     `${plain(structure.file)}: ${structure.atoms} atoms, ${structure.format}${structure.title ? `, "${plain(structure.title)}"` : ''}`,
-    `${absorbers.length} absorbing ${absorbers.length === 1 ? 'site' : 'sites'}: ${absorbers.map(({ label, weight }) => `${plain(label)} (${share(weight)})`).join(', ')}; ${options.edge} edge, S0² ${options.s02}`,
+    `${absorbers.length} absorbing ${absorbers.length === 1 ? 'site' : 'sites'}: ${absorbers.map(({ label, weight }) => `${plain(label)} (${share(weight)})`).join(', ')}; ${options.edge} edge${options.electricVector ? ` in light polarised along (${options.electricVector.join(', ')})` : ''}, S0² ${options.s02}`,
     ...disorderLines(prediction),
     `Fermi level ${scattering.fermiLevelEv.toFixed(2)} eV, interstitial ${scattering.interstitialPotentialEv.toFixed(2)} eV; spheres (bohr): ${scattering.atoms.map(({ element, role, muffinTinRadius }) => `${element}${role === 'absorber' ? '*' : ''} ${muffinTinRadius.toFixed(3)}`).join(', ')}`,
     '',
@@ -168,11 +174,8 @@ function summary(prediction: Prediction, out: string | undefined): string {
         share(p.share),
       ]),
     ),
-    ...(paths.length > shown.length
-      ? [
-          `… and ${paths.length - shown.length} more paths (--json or --out lists all); weaker ones left out carry at most ${share(prediction.neglected)} of the signal`,
-        ]
-      : []),
+    ...(paths.length > shown.length ? [`… and ${paths.length - shown.length} more paths (--json or --out lists all)`] : []),
+    `Weaker paths were left out: at most ${share(prediction.neglected)} of the signal`,
     ...(hasBound ? ['B-factor bound: U of both atoms as if they moved independently; above the true σ², shown and never added.'] : []),
     '',
     `k²χ(k) from 2 to ${k.at(-1)!.toFixed(1)} Å⁻¹`,

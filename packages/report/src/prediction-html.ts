@@ -23,6 +23,7 @@ export function predictionHtml(prediction: Prediction): string {
     ['Structure', `${structure.file} (${structure.format}, ${structure.atoms} atoms) ${structure.title}`],
     ['Absorber', absorbers.map(({ label, weight }) => `${label} (weight ${weight.toFixed(3)})`).join(', ')],
     ['Edge', options.edge],
+    ...(options.electricVector ? [['Electric vector', options.electricVector.join(', ')] as [string, string]] : []),
     ...disorderRows(prediction),
     ['Self-energy', options.selfEnergy],
     ['Longest half path', `${options.radius} Å`],

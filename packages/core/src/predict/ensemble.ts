@@ -74,6 +74,9 @@ export function planEnsemble(
 ): EnsemblePlan {
   const options: PredictOptions = { ...DEFAULTS, ...wanted, thermal: 'none' };
   checkOptions(options);
+  if (options.electricVector) {
+    throw new InputError('averages over frames are computed for light of all directions; leave the electric vector out, or predict one structure');
+  }
   const now = context.now ?? (() => 0);
   const clock: StageClock = { now, atoms: 0, potentials: 0, phases: 0, paths: 0 };
   const started = now();

@@ -11,6 +11,7 @@ import { coordinatePrecision, findSites } from '../structure/index.js';
 import type { Structure } from '../structure/types.js';
 import { type BandSite, priorBands } from './bands.js';
 import { areaOf, assemble, type Contribution, type DescribedSite, type PredictContext, siteWarnings } from './describe.js';
+import { lightNotes, lightTensor } from './light.js';
 import { checkOptions, DEFAULTS } from './options.js';
 import { type SiteSignal, type StageClock, siteSignal } from './site-signal.js';
 import { thermalModel } from './thermal.js';
@@ -34,7 +35,8 @@ export function predict(
   const started = now();
   const clock: StageClock = { now, atoms: 0, potentials: 0, phases: 0, paths: 0 };
   const k = uniformKGrid(options.kMax);
-  const warnings: Diagnostic[] = [...structure.diagnostics];
+  const light = options.electricVector && lightTensor(structure, options.electricVector);
+  const warnings: Diagnostic[] = [...structure.diagnostics, ...(light ? lightNotes(options) : [])];
   if (structure.moreFrames.length > 0) {
     warnings.push({
       code: 'first-frame',
@@ -42,26 +44,28 @@ export function predict(
     });
   }
   const bandSites: BandSite[] = [];
-  const described = findSites(structure, { absorber: options.absorber, radius: options.radius + OVERLAP_RADIUS }).map(
-    (site): DescribedSite => {
-      warnings.push(...site.diagnostics, ...siteWarnings(site, options.radius));
-      const signal = siteSignal(site, options, clock, context.running);
-      const model = thermalModel(structure, site, options, warnings);
-      const contributions = contributionsOf(signal, model, options, k);
-      bandSites.push({
-        signal,
-        disorder: contributions.map(({ disorder }) => disorder),
-        isNearest: contributions.map(({ isNearest }) => isNearest),
-      });
-      const thermal = {
-        model: model?.name ?? 'none',
-        temperature: options.temperature,
-        inputs: model?.inputs ?? {},
-        suggested: suggestThermalModel(site, structure),
-      };
-      return { signal, thermal, contributions };
-    },
-  );
+  const described = findSites(structure, {
+    absorber: options.absorber,
+    radius: options.radius + OVERLAP_RADIUS,
+    ...(light ? { keepOrientations: true } : {}),
+  }).map((site): DescribedSite => {
+    warnings.push(...site.diagnostics, ...siteWarnings(site, options.radius));
+    const signal = siteSignal(site, { ...options, light }, clock, context.running);
+    const model = thermalModel(structure, site, options, warnings);
+    const contributions = contributionsOf(signal, model, options, k);
+    bandSites.push({
+      signal,
+      disorder: contributions.map(({ disorder }) => disorder),
+      isNearest: contributions.map(({ isNearest }) => isNearest),
+    });
+    const thermal = {
+      model: model?.name ?? 'none',
+      temperature: options.temperature,
+      inputs: model?.inputs ?? {},
+      suggested: suggestThermalModel(site, structure),
+    };
+    return { signal, thermal, contributions };
+  });
   return assemble(structure, options, context, { k, sites: described, warnings, clock, started }, () =>
     options.bands ? { bands: priorBands(bandSites, coordinatePrecision(structure), options) } : {},
   );

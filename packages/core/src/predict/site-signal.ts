@@ -11,15 +11,15 @@ import { enumeratePaths, type Path } from '../paths/index.js';
 import {
   buildMuffinTin,
   exchangeCorrelation,
+  type LightTensor,
   type MuffinTin,
-  RehrAlbers,
+  PathAmplitudes,
   type ScatteringTable,
   type SelfEnergyName,
   scattererKinds,
   scatteringGrid,
   scatteringTable,
   selectPaths,
-  singleScattering,
 } from '../scattering/index.js';
 import { InterstitialWave, PathSignal } from '../spectrum/index.js';
 import type { Site } from '../structure/types.js';
@@ -48,6 +48,8 @@ export interface SiteSignalOptions {
   readonly maxLegs: number;
   /** Å⁻¹ */
   readonly kMax: number;
+  /** ⟨ε εᵀ⟩ of the electric vector in the site's axes; absent: averaged over all directions. */
+  readonly light?: LightTensor | undefined;
 }
 
 /** Seconds spent in each stage, added up over sites; the clock is the caller's. */
@@ -103,28 +105,20 @@ export function siteScattering(
 export function pathSignals(
   site: Site,
   { potential, table, wave, kindOfAtom }: SiteScattering,
-  { radius, maxLegs }: SiteSignalOptions,
+  { radius, maxLegs, light }: SiteSignalOptions,
   clock: StageClock,
   running?: Running,
 ): SiteSignal {
   const lap = laps(clock);
   const all = enumeratePaths({ site, kindOfAtom, radius, maxLegs }, running);
-  const { kept: paths, neglected, droppedPaths } = selectPaths(table, site, kindOfAtom, all, PATH_THRESHOLD);
-  const multiple = new RehrAlbers(table);
+  const { kept: paths, neglected, droppedPaths } = selectPaths(table, site, kindOfAtom, all, PATH_THRESHOLD, { light });
+  const amplitudes = new PathAmplitudes(table, site, kindOfAtom, { light });
   const re = new Float64Array(table.k.length);
   const im = new Float64Array(table.k.length);
   const signals = paths.map((path, i) => {
     checkRunning(running);
     running?.onProgress?.('path amplitudes', i / paths.length);
-    const spheres = path.vertices.map((vertex) => kindOfAtom[vertex]!);
-    if (path.legs === 2) singleScattering(table, spheres[1]!, path.halfLength, re, im);
-    else
-      multiple.amplitude(
-        path.vertices.map((vertex) => site.atoms[vertex]!.position),
-        spheres,
-        re,
-        im,
-      );
+    amplitudes.of(path, re, im);
     return new PathSignal(path, table, wave, re, im);
   });
   lap('paths');

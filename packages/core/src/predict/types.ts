@@ -7,6 +7,7 @@ import type { Edge } from '../atom/types.js';
 import type { Cumulants, ThermalModel, ThermalSuggestion } from '../disorder/index.js';
 import type { Diagnostic } from '../errors.js';
 import type { SelfEnergyName } from '../scattering/types.js';
+import type { Vec3 } from '../structure/types.js';
 
 export interface PredictOptions {
   /** Element symbol, or one atom by its label. */
@@ -21,6 +22,8 @@ export interface PredictOptions {
   /** Longest half path length, Å. */
   readonly radius: number;
   readonly maxLegs: number;
+  /** Electric vector of the light in the file's Cartesian axes, any length; absent: averaged over all directions. */
+  readonly electricVector?: Vec3;
   /** Å⁻¹ */
   readonly kMax: number;
   readonly s02: number;

@@ -8,13 +8,15 @@
 import { bohrFromAngstrom } from '../constants.js';
 import type { Path } from '../paths/types.js';
 import type { Site, Vec3 } from '../structure/types.js';
-import { RehrAlbers, type RehrAlbersTerms } from './rehr-albers.js';
+import { PathAmplitudes, type PathAmplitudesOptions } from './path-amplitudes.js';
 import type { ScatteringTable } from './types.js';
 
 /** Where paths are weighed, Å⁻¹. */
 const PROBES = [3, 5.4, 8.4, 12];
 /** The plane wave may be wrong by this factor at short distances: above the threshold divided by it, the exact amplitude decides. */
 const DOUBT = 5;
+/** Polarised light makes no path stronger than this times its plane wave, which leaves out the turn at the absorber: 3 (ε·first)(ε·last). */
+const POLARISED_MOST = 3;
 const ANGLES = 128;
 
 export interface Selection {
@@ -35,22 +37,17 @@ export function selectPaths(
   sphereOfAtom: Int32Array,
   paths: readonly Path[],
   threshold: number,
-  terms: RehrAlbersTerms = 6,
+  options: PathAmplitudesOptions = {},
 ): Selection {
   const probe = probeTable(table);
   const n = probe.k.length;
   const factors = angularFactors(probe);
-  const exact = new RehrAlbers(probe, terms);
+  const exact = new PathAmplitudes(probe, site, sphereOfAtom, options);
   const re = new Float64Array(n);
   const im = new Float64Array(n);
   const positionsOf = (path: Path): Vec3[] => path.vertices.map((vertex) => site.atoms[vertex]!.position);
   const strength = (path: Path): Float64Array => {
-    exact.amplitude(
-      positionsOf(path),
-      path.vertices.map((vertex) => sphereOfAtom[vertex]!),
-      re,
-      im,
-    );
+    exact.of(path, re, im);
     return Float64Array.from(re, (value, i) => path.degeneracy * Math.hypot(value, im[i]!));
   };
   const strongest = new Float64Array(n);
@@ -72,6 +69,7 @@ export function selectPaths(
     }
     const reaches = (values: Float64Array, part: number): boolean => values.some((value, i) => value >= part * strongest[i]!);
     let weight = planeWave(probe, factors, positionsOf(path), path, sphereOfAtom);
+    if (options.light) weight = weight.map((value) => POLARISED_MOST * value);
     if (reaches(weight, threshold / DOUBT)) weight = strength(path);
     weight.forEach((value, i) => {
       whole[i]! += value;

@@ -1,5 +1,5 @@
 /**
- * Multiple scattering by the separable propagator of Rehr & Albers, Phys. Rev. B 41, 8139 (1990), averaged over polarisation.
+ * Multiple scattering by the separable propagator of Rehr & Albers, Phys. Rev. B 41, 8139 (1990), averaged over polarisation or not.
  *
  * A path 0 → 1 → … → N−1 → 0 has legs i = 0 … N−1, ρ_i = p R_i, z = 1/(iρ), and index λ = (μ, ν):
  *
@@ -9,6 +9,8 @@
  *   M_{λλ'}     = γ^{l0}_λ(ρ_{N−1}) D^{l0}_{μμ'}(Q_{N−1}⁻¹Q_0) γ̃^{l0}_λ'(ρ_0)               (at the absorber)
  *   A           = e^{2iδ_{l0}} Π e^{iρ_i}/ρ_i · Tr[F^0 F^1 … F^{N−2} M]/(2l0 + 1)
  *
+ * In polarised light (polarisation.ts) B_{μμ'} stands in M instead of D^{l0}_{μμ'}.
+ *
  * C_0 = 1, C_1 = 1 − z, C_{l+1} = C_{l−1} − (2l+1) z C_l, and its derivatives in z. λ runs over 2ν + |μ| ≤ 2: six terms by
  * default (fifteen reach the exact expansion to 1 %). Accuracy: test/external/multiple-scattering.test.ts.
  *
@@ -17,10 +19,11 @@
  */
 import { bohrFromAngstrom } from '../constants.js';
 import type { Vec3 } from '../structure/types.js';
+import { absorberCoupling, type LightTensor } from './polarisation.js';
 import { smallD, type Turn, turnBetween } from './rotation.js';
 import type { ScatteringTable } from './types.js';
 
-/** λ = (μ, ν) in the order 2ν + |μ| = 0, 1, 2, 3, 4. */
+/** λ = (μ, ν) in the order 2ν + |μ| = 0, 1, 2, 3, 4; the last four make two legs exact for l0 = 2. */
 const LAMBDAS: readonly (readonly [mu: number, nu: number])[] = [
   [0, 0],
   [1, 0],
@@ -37,9 +40,13 @@ const LAMBDAS: readonly (readonly [mu: number, nu: number])[] = [
   [-2, 1],
   [4, 0],
   [-4, 0],
+  [1, 2],
+  [-1, 2],
+  [2, 2],
+  [-2, 2],
 ];
 
-export type RehrAlbersTerms = 1 | 3 | 6 | 10 | 15;
+export type RehrAlbersTerms = 1 | 3 | 6 | 10 | 15 | 19;
 
 /** γ and γ̃ of one distance: row-major (nk, terms, lMax + 1). */
 interface Gammas {
@@ -65,6 +72,7 @@ export class RehrAlbers {
   private readonly terms: number;
   private readonly gammas = new Map<number, Gammas>();
   private readonly vertices = new Map<string, Matrices>();
+  private absorber: Matrices | undefined;
   /** Work: the running product and the next matrix with its phases (terms²). */
   private readonly work: { aRe: Float64Array; aIm: Float64Array; bRe: Float64Array; bIm: Float64Array };
 
@@ -81,18 +89,22 @@ export class RehrAlbers {
    * @param positions  of the vertices, absorber first, Å (N ≥ 2)
    * @param spheres    sphere of each vertex in the table
    * @param re, im     (nk), filled in place
+   * @param light      ⟨ε εᵀ⟩ in the axes of the positions; absent: averaged over all directions
    */
-  amplitude(positions: readonly Vec3[], spheres: readonly number[], re: Float64Array, im: Float64Array): void {
+  amplitude(positions: readonly Vec3[], spheres: readonly number[], re: Float64Array, im: Float64Array, light?: LightTensor): void {
     const { table, terms } = this;
     const N = positions.length;
     const legs = positions.map((from, i) => legBetween(from, positions[(i + 1) % N]!));
     const turns = legs.map((leg, i) => turnBetween(leg.direction, legs[(i + 1) % N]!.direction));
+    // Polarised, the absorber's matrix holds both of its rotations itself.
+    if (light) turns[N - 1] = { alpha: 0, cosBeta: 1, gamma: 0 };
     re.fill(0);
     im.fill(0);
     for (const { l0, weight, re: phaseRe, im: phaseIm } of table.channels) {
       // matrices[i] stands at the vertex after leg i; the last is the absorber's.
       const matrices = legs.map((leg, i) => {
         const next = legs[(i + 1) % N]!;
+        if (light && i === N - 1) return this.absorberMatrix(l0, leg, next, light);
         return this.matrixAt(i === N - 1 ? -1 - l0 : spheres[i + 1]!, leg.length, next.length, turns[i]!.cosBeta);
       });
       for (let k = 0; k < table.k.length; k++) {
@@ -187,6 +199,38 @@ export class RehrAlbers {
       this.vertices.set(key, found);
     }
     return found;
+  }
+
+  /** M of channel l0 in polarised light, all its rotations in it. */
+  private absorberMatrix(l0: number, last: Leg, first: Leg, light: LightTensor): Matrices {
+    const { terms, table } = this;
+    const width = table.lMax + 1;
+    const before = this.gammasOf(Math.round(last.length / DISTANCE_GRAIN));
+    const after = this.gammasOf(Math.round(first.length / DISTANCE_GRAIN));
+    const coupling = absorberCoupling(l0, light, last.direction, first.direction);
+    const size = table.k.length * terms * terms;
+    this.absorber ??= { re: new Float64Array(size), im: new Float64Array(size) };
+    const out = this.absorber;
+    for (let a = 0; a < terms; a++) {
+      for (let b = 0; b < terms; b++) {
+        const mu = LAMBDAS[a]![0];
+        const muPrime = LAMBDAS[b]![0];
+        const isInside = Math.abs(mu) <= l0 && Math.abs(muPrime) <= l0;
+        const entry = (l0 + mu) * (2 * l0 + 1) + l0 + muPrime;
+        const bRe = isInside ? coupling.re[entry]! : 0;
+        const bIm = isInside ? coupling.im[entry]! : 0;
+        for (let k = 0; k < table.k.length; k++) {
+          const left = (k * terms + a) * width + l0;
+          const right = (k * terms + b) * width + l0;
+          const gRe = before.re[left]! * after.tildeRe[right]! - before.im[left]! * after.tildeIm[right]!;
+          const gIm = before.re[left]! * after.tildeIm[right]! + before.im[left]! * after.tildeRe[right]!;
+          const at = (k * terms + a) * terms + b;
+          out.re[at] = bRe * gRe - bIm * gIm;
+          out.im[at] = bRe * gIm + bIm * gRe;
+        }
+      }
+    }
+    return out;
   }
 
   private buildMatrix(sphere: number, before: Gammas, after: Gammas, cosBeta: number): Matrices {
@@ -310,7 +354,13 @@ function scaleByPowers(zRe: number, zIm: number, width: number, orders: number, 
   }
 }
 
-function legBetween(from: Vec3, to: Vec3): { readonly length: number; readonly direction: Vec3 } {
+/** Length in Å, direction a unit vector. */
+interface Leg {
+  readonly length: number;
+  readonly direction: Vec3;
+}
+
+function legBetween(from: Vec3, to: Vec3): Leg {
   const d: Vec3 = [to[0] - from[0], to[1] - from[1], to[2] - from[2]];
   const length = Math.hypot(...d);
   return { length, direction: [d[0] / length, d[1] / length, d[2] / length] };

@@ -29,7 +29,7 @@ export function turnBetween(from: Vec3, to: Vec3): Turn {
 }
 
 /** Columns x, y, z of the frame R_z(φ) R_y(θ) along a unit vector. */
-function frameOf(u: Vec3): readonly [Vec3, Vec3, Vec3] {
+export function frameOf(u: Vec3): readonly [Vec3, Vec3, Vec3] {
   const sine = Math.hypot(u[0], u[1]);
   const cosPhi = sine > 1e-12 ? u[0] / sine : 1;
   const sinPhi = sine > 1e-12 ? u[1] / sine : 0;

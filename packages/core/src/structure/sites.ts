@@ -16,6 +16,8 @@ export interface SiteOptions {
   readonly radius: number;
   /** Å: alternate conformations this near are all combined; farther ones show the likeliest. Default: radius, at most 6. */
   readonly variantRadius?: number;
+  /** Keep atoms listed apart as sites of their own though their surroundings are alike: polarised light sees them from other sides. */
+  readonly keepOrientations?: boolean;
   /** Most combinations of alternates kept a site, the likeliest ones. Default 32. */
   readonly maxVariants?: number;
 }
@@ -63,7 +65,7 @@ export function findSites(structure: Structure, options: SiteOptions): readonly 
         );
       }
     }
-    const merged = images.isCrystal ? mergeEquivalent(found) : found;
+    const merged = images.isCrystal && !options.keepOrientations ? mergeEquivalent(found) : found;
     if (images.isCrystal) checkCount(new Set(merged.map(({ atoms: [own] }) => own!.source)).size, structure.atoms[sources[0]!]!);
     for (const site of normalised(merged)) sites.push(site);
   }
