@@ -35,6 +35,14 @@ export function addPredict(program: Command): void {
         .choices(['mean', 'hedin-lundqvist', 'dirac-hara'])
         .default('mean'),
     )
+    .addOption(
+      new Option(
+        '--spheres <per>',
+        'one potential per element, or per element and surroundings (they differ when neighbours bring potentials more than 1 eV apart)',
+      )
+        .choices(['element', 'surroundings'])
+        .default('element'),
+    )
     .option('--radius <angstrom>', 'longest half path length, Å (default 5)', number)
     .option('--max-legs <n>', 'most legs of a path, 2 to 5 (default 4)', number)
     .option(

@@ -197,3 +197,7 @@ test('bad frames are named by frame and atom', () => {
 test('a stop asked for is obeyed', () => {
   expect(() => predictEnsemble(trajectory(3), options, {}, { ...context, running: { signal: { aborted: true } } })).toThrow('cancelled');
 });
+
+test('an electric vector is refused, not dropped', () => {
+  expect(() => predictEnsemble(trajectory(3), { ...options, electricVector: [0, 0, 1] }, {}, context)).toThrow('light of all directions');
+});

@@ -9,7 +9,7 @@
  */
 import { BOHR_ANGSTROM, EV_PER_K_SQUARED } from '../constants.js';
 import { type Cumulants, suggestThermalModel } from '../disorder/index.js';
-import { checkRunning, type Diagnostic, type Running } from '../errors.js';
+import { checkRunning, type Diagnostic, InputError, type Running } from '../errors.js';
 import { OVERLAP_RADIUS, type ScatteringTable } from '../scattering/index.js';
 import { PathSignal, PathSum, uniformKGrid } from '../spectrum/index.js';
 import { findSites } from '../structure/index.js';
@@ -75,7 +75,9 @@ export function planEnsemble(
   const options: PredictOptions = { ...DEFAULTS, ...wanted, thermal: 'none' };
   checkOptions(options);
   if (options.electricVector) {
-    throw new InputError('averages over frames are computed for light of all directions; leave the electric vector out, or predict one structure');
+    throw new InputError(
+      'averages over frames are computed for light of all directions; leave the electric vector out, or predict one structure',
+    );
   }
   const now = context.now ?? (() => 0);
   const clock: StageClock = { now, atoms: 0, potentials: 0, phases: 0, paths: 0 };

@@ -7,6 +7,7 @@ export const DEFAULTS: Omit<PredictOptions, 'absorber'> = {
   temperature: 300,
   thermal: 'debye',
   selfEnergy: 'mean',
+  spheres: 'element',
   radius: 5,
   maxLegs: 4,
   kMax: 15,

@@ -48,6 +48,8 @@ export interface SiteSignalOptions {
   readonly maxLegs: number;
   /** Å⁻¹ */
   readonly kMax: number;
+  /** Which atoms share a sphere: those of an element (default), or those of an element in like surroundings. */
+  readonly spheres?: 'element' | 'surroundings';
   /** ⟨ε εᵀ⟩ of the electric vector in the site's axes; absent: averaged over all directions. */
   readonly light?: LightTensor | undefined;
 }
@@ -82,7 +84,7 @@ export function siteSignal(site: Site, options: SiteSignalOptions, clock: StageC
 /** Atoms, potential and phase shifts of a site; throws as `siteSignal`. */
 export function siteScattering(
   site: Site,
-  { edge, selfEnergy, radius, kMax }: SiteSignalOptions,
+  { edge, selfEnergy, radius, kMax, spheres = 'element' }: SiteSignalOptions,
   clock: StageClock,
   running?: Running,
 ): SiteScattering {
@@ -90,11 +92,12 @@ export function siteScattering(
   const absorber = numberOf(site.element);
   const width = hartreeFromEv(coreWidthEv(absorber, edge));
   const lap = laps(clock);
-  const kinds = scattererKinds(site, radius);
+  const atomOfElement = (element: string) => freeAtom(numberOf(element));
+  const kinds = scattererKinds(site, radius, spheres === 'surroundings' ? atomOfElement : undefined);
   const atoms = kinds.representatives.map((index, kind) => freeAtom(numberOf(site.atoms[index]!.element), kind === 0 ? edge : undefined));
   for (const { element } of site.atoms) if (element !== 'H') freeAtom(numberOf(element));
   lap('atoms');
-  const potential = buildMuffinTin({ site, ...kinds, atoms, atomOfElement: (element) => freeAtom(numberOf(element)) });
+  const potential = buildMuffinTin({ site, ...kinds, atoms, atomOfElement });
   lap('potentials');
   const table = scatteringTable(potential, exchangeCorrelation(selfEnergy, width), edge, scatteringGrid(kMax), running);
   lap('phases');

@@ -22,6 +22,8 @@ export interface PredictOptions {
   /** Longest half path length, Å. */
   readonly radius: number;
   readonly maxLegs: number;
+  /** Which atoms share a muffin-tin sphere: those of an element, or those of an element in like surroundings. */
+  readonly spheres: 'element' | 'surroundings';
   /** Electric vector of the light in the file's Cartesian axes, any length; absent: averaged over all directions. */
   readonly electricVector?: Vec3;
   /** Å⁻¹ */

@@ -128,7 +128,9 @@ export function buildMuffinTin({ site, kindOfAtom, representatives, atoms, atomO
   });
 
   const counts = new Float64Array(centres.length);
-  for (const kind of kindOfAtom) if (kind >= 0) counts[kind]!++;
+  kindOfAtom.forEach((kind, index) => {
+    if (kind >= 0) counts[kind]! += index === 0 ? 1 : site.atoms[index]!.occupancy;
+  });
   const interstitial = averageBetween(contents, spheres, counts);
   const fermiMomentum = Math.cbrt(3 * Math.PI * Math.PI * interstitial.density);
   return {
