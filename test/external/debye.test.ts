@@ -55,7 +55,7 @@ test('T = 0 and the classical slope of copper', () => {
 });
 
 // EXAFS literature on foils, from memory (e.g. Fornasini et al., Phys. Rev. B 70, 174301 (2004) for copper; ranges as remembered).
-test('first shells of copper and platinum lie within the scatter of the literature', () => {
+test('first shells of copper, nickel and platinum lie within the scatter of the literature', () => {
   const first = (a: number, mass: number, debyeTemperature: number, temperature: number) =>
     correlatedDebye({ debyeTemperature, atomDensity: 4 / a ** 3, temperature }).sigma2([
       { atom: 0, element: 'M', position: [0, 0, 0], mass },
@@ -64,5 +64,6 @@ test('first shells of copper and platinum lie within the scatter of the literatu
   expectNear(first(3.6149, 63.546, 315, 300), 0.0085, { abs: 0.0005, label: 'Cu 300 K' });
   expectNear(first(3.6149, 63.546, 315, 15), 0.00315, { abs: 0.00025, label: 'Cu 15 K' });
   expectNear(first(3.6149, 63.546, 315, 78), 0.0035, { abs: 0.0003, label: 'Cu 78 K' });
+  expectNear(first(3.524, 58.693, 390, 300), 0.006, { abs: 0.0006, label: 'Ni 300 K' });
   expectNear(first(3.9242, 195.084, 240, 300), 0.005, { abs: 0.0005, label: 'Pt 300 K' });
 });

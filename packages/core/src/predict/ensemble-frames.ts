@@ -64,14 +64,14 @@ function vectorsOf(cell: Cell): number[] {
 }
 
 /** More sample frames than this are thinned to every other one. */
-const MOST_SAMPLES = 64;
+const MOST_SAMPLES = 96;
 
 /** Mean surroundings and an even sample of the frames that were added. */
 export class EnsembleSurvey {
   readonly first: Structure;
   /** Frames added. */
   count = 0;
-  /** Packed frames, evenly spaced: every 2ⁿ-th, 32 to 64 of them where there are as many. */
+  /** Packed frames, evenly spaced: every 2ⁿ-th, 48 to 96 of them where there are as many. */
   samples: Float64Array[] = [];
   private stride = 1;
   private readonly size: number;

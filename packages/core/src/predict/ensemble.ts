@@ -36,6 +36,8 @@ import type { EnsembleSummary, Prediction, PredictOptions } from './types.js';
 export const BLOCK_FRAMES = 32;
 /** Below so many frames the exact amplitudes of all cost less than a polynomial fitted to samples of them. */
 const EXACT_BELOW = 96;
+/** Sample frames used: the longest polynomial has 20 terms to fit. */
+const SAMPLES = 56;
 /** Every so many sample frames one is kept from the fit, to test it. */
 const TEST_EVERY = 8;
 /** Parts for the statistical error: joined in pairs beyond twice this. */
@@ -132,9 +134,13 @@ export function planEnsemble(
 /** Polynomials fitted to most samples and tested, whole χ against whole χ, on the others. */
 function expand(
   block: BlockPlan,
-  samples: readonly Float64Array[],
+  all: readonly Float64Array[],
   running: Running | undefined,
 ): { block: BlockPlan; error: number; tests: number } {
+  const samples = Array.from(
+    { length: Math.min(SAMPLES, all.length) },
+    (_, i) => all[Math.floor((i * all.length) / Math.min(SAMPLES, all.length))]!,
+  );
   const isTest = (_: unknown, i: number): boolean => i % TEST_EVERY === TEST_EVERY / 2;
   const tests = samples.filter(isTest);
   const rest = samples.filter((_, i) => !isTest(_, i));
