@@ -113,7 +113,7 @@ test('expanded amplitudes miss the exact average by no more than they say', () =
   const error = rms(fast!.k, fast!.chi, slow!.chi) / rms(slow!.k, slow!.chi);
   expect(error).toBeGreaterThan(0);
   expect(error).toBeLessThan(1.5 * fast!.ensemble!.expansionError);
-  expect(fast!.ensemble!.expansionError).toBeLessThan(0.02);
+  expect(fast!.ensemble!.expansionError).toBeLessThan(1e-4); // 3e-6 here; 4e-4 with one linear term lost
 });
 
 test('the same bits wherever blocks are summed, and the cumulants are those of the half lengths', () => {
