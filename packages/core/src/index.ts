@@ -54,7 +54,15 @@ export {
 export { type EnsembleFrame, EnsembleSurvey, frameSize, packFrame } from './predict/ensemble-frames.js';
 export { type BlockPlan, type BlockSums, blockSums } from './predict/ensemble-sums.js';
 export { predict } from './predict/predict.js';
-export type { EnsembleSummary, PredictedNeighbour, PredictedPath, PredictedShell, Prediction, PredictOptions } from './predict/types.js';
+export type {
+  ChiPart,
+  EnsembleSummary,
+  PredictedNeighbour,
+  PredictedPath,
+  PredictedShell,
+  Prediction,
+  PredictOptions,
+} from './predict/types.js';
 export type { SelfEnergyName } from './scattering/types.js';
 export {
   backTransform,
@@ -68,9 +76,12 @@ export {
 export {
   type Atom,
   type Cell,
+  coordinationShell,
   describeSites,
   findSites,
   frameOf,
+  type Link,
+  longestBond,
   type ReadOptions,
   readStructure,
   type Site,

@@ -5,6 +5,7 @@ import { type Diagnostic, InputError, type Running } from '../errors.js';
 import { pathLabel } from '../paths/index.js';
 import { fourierTransform, type PathDisorder } from '../spectrum/index.js';
 import type { Site, Structure } from '../structure/types.js';
+import { partsOf } from './parts.js';
 import type { SiteSignal, StageClock } from './site-signal.js';
 import type { PredictedPath, PredictedShell, PredictedThermal, Prediction, PredictOptions } from './types.js';
 
@@ -129,6 +130,8 @@ export function assemble(
       paths: clock.paths,
       total: clock.now() - started,
     },
+    // Where another χ than the sum of the paths is the result, its parts are not known.
+    ...(options.bands && more.chi === undefined ? { contributions: partsOf(contributions, shellsOf(contributions, options).shells) } : {}),
     ...more,
   };
 }
@@ -162,7 +165,8 @@ function signalOf({ site, index, disorder, cumulants }: Contribution, grid: Floa
   return { k, amplitude, phase };
 }
 
-function describeShells(contributions: readonly Contribution[], options: PredictOptions, k: Float64Array, total: number): PredictedShell[] {
+/** The single-scattering contributions and the shells they form. */
+function shellsOf(contributions: readonly Contribution[], { kMax }: PredictOptions) {
   const single = contributions.filter(({ site, index }) => site.paths[index]!.legs === 2);
   const members = single.map(({ site, index, weight, disorder }): ShellPath => {
     const { halfLength, degeneracy, vertices } = site.paths[index]!;
@@ -170,11 +174,21 @@ function describeShells(contributions: readonly Contribution[], options: Predict
     return { element, halfLength, degeneracy: degeneracy * weight, thermal: disorder.sigma2, thirdCumulant: disorder.c3 };
   });
   const absorber = contributions[0]!.site.site.element;
-  return groupShells(members, distanceResolution(WINDOW_START, options.kMax)).map((shell) => {
-    const { element, count, meanDistance, sigma2, thirdCumulant } = shell;
+  const shells = groupShells(members, distanceResolution(WINDOW_START, kMax)).map((shell) => ({
+    ...shell,
+    label: `${absorber}–${shell.element} ${shell.meanDistance.toFixed(2)} Å`,
+    contributions: shell.members.map((j) => single[j]!),
+  }));
+  return { single, members, shells };
+}
+
+function describeShells(contributions: readonly Contribution[], options: PredictOptions, k: Float64Array, total: number): PredictedShell[] {
+  const { single, members, shells } = shellsOf(contributions, options);
+  return shells.map((shell) => {
+    const { label, element, count, meanDistance, sigma2, thirdCumulant } = shell;
     const bound = bFactorBound(shell, single, members);
     return {
-      label: `${absorber}–${element} ${meanDistance.toFixed(2)} Å`,
+      label,
       element,
       count,
       meanDistance,

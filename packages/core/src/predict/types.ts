@@ -104,6 +104,12 @@ export interface Bands {
   readonly high95: Float64Array;
 }
 
+/** A part of χ(k), on the grid of the prediction, S0² and damping included. */
+export interface ChiPart {
+  readonly label: string;
+  readonly chi: Float64Array;
+}
+
 /** What was averaged, and how well. */
 export interface EnsembleSummary {
   readonly frames: number;
@@ -155,6 +161,8 @@ export interface Prediction {
   readonly ensemble?: EnsembleSummary;
   /** With `bands`. */
   readonly bands?: Bands;
+  /** With `bands`: the parts χ is the sum of. By shell: the strongest ones, other shells, multiple scattering. By order: number of legs. */
+  readonly contributions?: { readonly byShell: readonly ChiPart[]; readonly byOrder: readonly ChiPart[] };
   readonly transform: {
     readonly R: Float64Array;
     readonly real: Float64Array;

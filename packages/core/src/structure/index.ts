@@ -17,6 +17,7 @@ export { atomLabel, findSites, frameOf, type SiteOptions } from './sites.js';
 export type {
   Atom,
   Cell,
+  Link,
   RefinementStatistics,
   Residue,
   Site,
