@@ -2,7 +2,8 @@ import { defineConfig } from 'vite';
 
 // The command is bundled because importing mathjs file by file costs seconds at every start.
 export default defineConfig({
-  ssr: { noExternal: true, resolve: { conditions: ['source', 'node'], externalConditions: ['node'] } },
+  // The renderer of PNGs is native code, found by its own loader at run time.
+  ssr: { noExternal: true, external: ['@resvg/resvg-js'], resolve: { conditions: ['source', 'node'], externalConditions: ['node'] } },
   build: {
     ssr: true,
     target: 'node20',

@@ -1,5 +1,5 @@
 /** Reading what the user names and writing results whole or not at all. */
-import { mkdirSync, readFileSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
+import { existsSync, mkdirSync, readFileSync, renameSync, rmSync, statSync, writeFileSync } from 'node:fs';
 import { dirname, join } from 'node:path';
 import { UsageError } from './command.js';
 
@@ -21,25 +21,35 @@ export function readText(path: string): string {
   }
 }
 
-/** Write the files of a result into a folder, each under a temporary name first, so that none is ever found half-written. */
-export function writeFolder(folder: string, files: ReadonlyMap<string, string>): void {
+/**
+ * Write the files of a result. A new folder appears whole: it is filled under a temporary name beside its place and renamed. In a
+ * folder that exists other files are left alone; its result.json goes first and comes last, each file renamed into place, so that a
+ * folder with a result.json is complete either way.
+ */
+export function writeFolder(folder: string, files: ReadonlyMap<string, string | Uint8Array>): void {
+  const staged = `${folder.replace(/[/\\]+$/, '')}.part-${process.pid}`;
   try {
+    if (existsSync(folder) && !statSync(folder).isDirectory()) throw Object.assign(new Error('not a folder'), { code: 'EEXIST' });
     for (const [name, content] of files) {
       // Names are the program's own; one that came from a file must not lead out of the folder.
       if (!/^[\w-]+(\.[\w-]+)*(\/[\w-]+(\.[\w-]+)*)*$/.test(name)) throw new Error(`"${name}" is no name for a result`);
-      const path = join(folder, name);
+      const path = join(staged, name);
       mkdirSync(dirname(path), { recursive: true });
-      const temporary = `${path}.part-${process.pid}`;
-      try {
-        writeFileSync(temporary, content);
-        renameSync(temporary, path);
-      } catch (error) {
-        rmSync(temporary, { force: true });
-        throw error;
-      }
+      writeFileSync(path, content);
+    }
+    if (!existsSync(folder)) {
+      renameSync(staged, folder);
+      return;
+    }
+    rmSync(join(folder, 'result.json'), { force: true });
+    for (const name of [...files.keys()].sort((a, b) => Number(a === 'result.json') - Number(b === 'result.json'))) {
+      mkdirSync(dirname(join(folder, name)), { recursive: true });
+      renameSync(join(staged, name), join(folder, name));
     }
   } catch (error) {
     throw new UsageError(`cannot write to ${folder}: ${reasonOf(error)}`);
+  } finally {
+    rmSync(staged, { recursive: true, force: true });
   }
 }
 

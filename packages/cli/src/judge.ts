@@ -11,13 +11,15 @@ import {
   reduce,
   VERSION,
 } from '@ringtrue/core';
-import { csvTable, judgementTables } from '@ringtrue/report';
+import { judgementFiles } from '@ringtrue/report';
 import { type Command, Option } from 'commander';
 import { aboutFile, runCommand, UsageError } from './command.js';
 import { addEvidenceOptions, type EvidenceFlags, notesOf, number, range, readScans, reduceOptionsOf } from './evidence-options.js';
-import { readText, writeFolder } from './files.js';
+import { readText } from './files.js';
 import { toJson } from './json.js';
+import { dpi } from './png.js';
 import { showProgress } from './progress.js';
+import { candidateExtras, runRecord, writeResult } from './result-folder.js';
 import { plain, textTable } from './terminal.js';
 
 interface Flags extends EvidenceFlags, JudgeOptions {
@@ -27,6 +29,7 @@ interface Flags extends EvidenceFlags, JudgeOptions {
   readonly kRange?: readonly (readonly [number, number])[];
   readonly rRange?: readonly (readonly [number, number])[];
   readonly kWeight?: readonly number[];
+  readonly png?: number;
 }
 
 const EXAMPLES = `
@@ -89,12 +92,14 @@ export function addJudge(program: Command): void {
         'never',
       ]),
     )
-    .option('--out <folder>', 'write result.json and tables into a folder')
+    .option('--out <folder>', 'write report (HTML, Markdown), figures, tables, references and result.json into a folder')
+    .option('--png <dpi>', 'with --out: each figure as PNG too, 8 cm wide at so many dots per inch', dpi)
     .addHelpText('after', EXAMPLES)
     .action((files: string[], flags: Flags) => runCommand(() => run(files, flags)));
 }
 
-function run(files: readonly string[], flags: Flags): void {
+async function run(files: readonly string[], flags: Flags): Promise<void> {
+  if (flags.png !== undefined && flags.out === undefined) throw new UsageError('--png goes with --out');
   const evidence = evidenceOf(flags);
   const candidates = files.map((file) => {
     const text = readText(file);
@@ -108,7 +113,16 @@ function run(files: readonly string[], flags: Flags): void {
   });
   progress?.clear();
   const notes = notesOf([...judgement.warnings, ...judgement.candidates.flatMap(({ warnings }) => warnings)]);
-  if (flags.out !== undefined) writeFolder(flags.out, filesOf(judgement));
+  if (flags.out !== undefined) {
+    const options = judgeOptionsOf(flags);
+    const report = judgementFiles(judgement, {
+      record: runRecord([...files, ...flags.data.flatMap(scansOf)]),
+      reductions: evidence.map(({ reduction }) => reduction),
+      candidates: candidateExtras(candidates, evidence, options),
+      options: { ...options, ...reduceOptionsOf(flags) },
+    });
+    await writeResult(flags.out, report, judgement, flags.png);
+  }
   if (flags.json) {
     process.stdout.write(`${toJson(judgement)}\n`);
     for (const note of notes) process.stderr.write(`${note}\n`);
@@ -170,13 +184,6 @@ function judgeOptionsOf(flags: Flags): JudgeOptions {
     ...(sampling === undefined ? {} : { sampling }),
     bands: json === true || out !== undefined,
   };
-}
-
-function filesOf(judgement: Judgement): Map<string, string> {
-  const files = new Map<string, string>();
-  for (const table of judgementTables(judgement)) files.set(`tables/${table.name}.csv`, csvTable(table));
-  files.set('result.json', `${toJson(judgement)}\n`);
-  return files;
 }
 
 function summary({ evidence, candidates, groups, timing }: Judgement): string[] {

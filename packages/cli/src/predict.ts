@@ -1,21 +1,23 @@
 /** `ringtrue predict`: a structure file to a predicted χ(k). */
 import { basename } from 'node:path';
 import { type Prediction, type PredictOptions, predict, readStructure, VERSION } from '@ringtrue/core';
-import { chiInK, chiInR } from '@ringtrue/figures';
-import { csvTable, predictionHtml, tablesOf } from '@ringtrue/report';
+import { predictionFiles } from '@ringtrue/report';
 import { type Command, Option } from 'commander';
 import { aboutFile, runCommand, UsageError } from './command.js';
 import { computeEnsemble, type EnsembleFlags } from './ensemble.js';
 import { number, vector } from './evidence-options.js';
-import { readText, writeFolder } from './files.js';
+import { readText } from './files.js';
 import { toJson } from './json.js';
+import { dpi } from './png.js';
 import { showProgress } from './progress.js';
+import { runRecord, sitePictures, writeResult } from './result-folder.js';
 import { plain, smallPlot, textTable } from './terminal.js';
 
 interface Flags extends Partial<PredictOptions>, EnsembleFlags {
   readonly absorber: string;
   readonly json?: boolean;
   readonly out?: string;
+  readonly png?: number;
   readonly ensemble?: boolean;
 }
 
@@ -67,7 +69,8 @@ export function addPredict(program: Command): void {
     .option('--exact', 'with --ensemble: multiple scattering computed in every frame, some 100 times slower')
     .option('--path-signals', 'amplitude and phase of every path in the JSON')
     .option('--json', 'print one JSON document and nothing else on standard output')
-    .option('--out <folder>', 'write result.json, report.html, figures and tables into a folder')
+    .option('--out <folder>', 'write report (HTML, Markdown), figures, tables, references and result.json into a folder')
+    .option('--png <dpi>', 'with --out: each figure as PNG too, 8 cm wide at so many dots per inch', dpi)
     .addHelpText('after', EXAMPLES)
     .action((file: string, flags: Flags, command: Command) => runCommand(() => run(file, flags, command)));
 }
@@ -76,17 +79,18 @@ const EXAMPLES = `
 Examples:
   ringtrue predict demo-structures/tideglass.cif --absorber Mn --temperature 15 --debye-temperature 500
   ringtrue predict demo-structures/redoxin-site.xyz --absorber Fe --json > redoxin.json
-  ringtrue predict demo-structures/tideglass.cif --absorber Mn --radius 6 --out tideglass-prediction
+  ringtrue predict demo-structures/tideglass.cif --absorber Mn --radius 6 --out tideglass-prediction --png 300
   ringtrue predict trajectory.xyz --absorber Fe --ensemble --jobs 4
   ringtrue predict demo-structures/tideglass.cif --absorber Mn --electric-vector 0,0,1
 
 A prediction that agrees with a measurement shows consistency; it is no proof of a structure.`;
 
-async function run(file: string, { json, out, ensemble, jobs, renew, exact, ...options }: Flags, command: Command): Promise<void> {
+async function run(file: string, { json, out, png, ensemble, jobs, renew, exact, ...options }: Flags, command: Command): Promise<void> {
   const own = Object.entries({ jobs, renew, exact }).find(([, value]) => value !== undefined);
   if (own && !ensemble) throw new UsageError(`--${own[0]} goes with --ensemble`);
   if (ensemble && command.getOptionValueSource('thermal') === 'cli')
     throw new UsageError('--ensemble takes the disorder from the frames; leave --thermal out');
+  if (png !== undefined && out === undefined) throw new UsageError('--png goes with --out');
   const { thermal: _, ...frameOptions } = options;
   const prediction = ensemble
     ? await computeEnsemble(file, frameOptions, {
@@ -95,7 +99,11 @@ async function run(file: string, { json, out, ensemble, jobs, renew, exact, ...o
         ...(exact === undefined ? {} : { exact }),
       })
     : compute(file, { ...options, bands: json === true || out !== undefined });
-  if (out !== undefined) writeFolder(out, filesOf(prediction));
+  if (out !== undefined) {
+    // Frames have no one geometry to draw.
+    const sites = ensemble ? [] : sitePictures(readStructure(readText(file), { fileName: file }), prediction);
+    await writeResult(out, predictionFiles(prediction, { record: runRecord([file]), sites }), prediction, png);
+  }
   if (json) {
     process.stdout.write(`${toJson(prediction)}\n`);
     for (const { message } of prediction.warnings) process.stderr.write(`${plain(message)}\n`);
@@ -104,7 +112,7 @@ async function run(file: string, { json, out, ensemble, jobs, renew, exact, ...o
   }
 }
 
-function compute(file: string, options: Omit<Flags, 'json' | 'out' | 'ensemble' | keyof EnsembleFlags>): Prediction {
+function compute(file: string, options: Omit<Flags, 'json' | 'out' | 'ensemble' | 'png' | keyof EnsembleFlags>): Prediction {
   const text = readText(file);
   const progress = showProgress();
   const context = {
@@ -116,16 +124,6 @@ function compute(file: string, options: Omit<Flags, 'json' | 'out' | 'ensemble' 
   const prediction = aboutFile(file, () => predict(readStructure(text, { fileName: file }), options, context));
   progress?.clear();
   return prediction;
-}
-
-function filesOf(prediction: Prediction): Map<string, string> {
-  const files = new Map<string, string>();
-  files.set('figures/chi-k.svg', chiInK(prediction));
-  files.set('figures/chi-R.svg', chiInR(prediction));
-  for (const table of Object.values(tablesOf(prediction))) files.set(`tables/${table.name}.csv`, csvTable(table));
-  files.set('report.html', predictionHtml(prediction));
-  files.set('result.json', `${toJson(prediction)}\n`);
-  return files;
 }
 
 /** What a reader wants first, in words and three tables. */

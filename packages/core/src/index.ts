@@ -1,6 +1,7 @@
 /** @ringtrue/core: from coordinates to a predicted χ(k). Å, Å⁻¹, Å², eV, K at this door. */
 export type { Edge } from './atom/types.js';
 export * as constants from './constants.js';
+export { suggestThermalModel } from './disorder/index.js';
 export { CancelledError, ConvergenceError, type Diagnostic, InputError, ReadError, type Running } from './errors.js';
 export {
   type BackgroundProjector,

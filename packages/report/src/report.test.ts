@@ -1,7 +1,8 @@
 import { predict, readStructure } from '@ringtrue/core';
 import { expect, test } from 'vitest';
 import { csvTable } from './csv.js';
-import { predictionHtml } from './prediction-html.js';
+import { documentHtml } from './document-html.js';
+import { predictionReport } from './prediction-report.js';
 
 test('commas, quotes and line ends inside a cell are quoted', () => {
   const csv = csvTable({
@@ -18,7 +19,8 @@ test('commas, quotes and line ends inside a cell are quoted', () => {
 
 const page = (title: string, thermal: 'debye' | 'springs' | 'einstein' | 'none') => {
   const structure = readStructure(`3\n${title}\nFe 0 0 0\nS 2.3 0 0\nS -2.3 0 0\n`);
-  return predictionHtml(predict(structure, { absorber: 'Fe', thermal, temperature: 20, bands: true }, { file: 'a&b.xyz', version: '1' }));
+  const prediction = predict(structure, { absorber: 'Fe', thermal, temperature: 20, bands: true }, { file: 'a&b.xyz', version: '1' });
+  return documentHtml(predictionReport(prediction).document);
 };
 
 test('the report names the thermal model that was used', () => {
