@@ -53,7 +53,10 @@ const general = format('~g');
 export const tickText = (value: number): string => general(Number(value.toPrecision(12))).replace('-', '−');
 
 /** A number with so many decimals and a true minus sign. */
-export const decimals = (value: number, places: number): string => value.toFixed(places).replace('-', '−');
+export const decimals = (value: number, places: number): string => {
+  const text = value.toFixed(places);
+  return Number(text) === 0 ? text.replace('-', '') : text.replace('-', '−');
+};
 
 interface TextOptions {
   readonly anchor?: 'start' | 'middle' | 'end';

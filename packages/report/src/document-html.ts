@@ -13,6 +13,7 @@ table { border-collapse: collapse; width: 100%; font-size: 0.86rem; font-variant
 caption { text-align: left; font-weight: bold; padding: 0.4rem 0; }
 th, td { text-align: right; vertical-align: top; padding: 0.2rem 0.5rem; border-bottom: 1px solid #d9dee3; overflow-wrap: break-word; }
 th:first-child, td:first-child, table.facts th, table.facts td { text-align: left; }
+.facts th, .facts td { overflow-wrap: anywhere; }
 table.facts th { width: 32%; font-weight: normal; color: #4b555e; }
 figure { margin: 1.2rem 0; break-inside: avoid; }
 figure svg { display: block; width: 100%; max-width: 32rem; height: auto; }
