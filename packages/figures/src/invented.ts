@@ -35,6 +35,7 @@ export const PREDICTION: Prediction = {
     temperature: 15,
     thermal: 'debye',
     selfEnergy: 'mean',
+    spheres: 'element',
     radius: 5,
     maxLegs: 4,
     kMax: 12,

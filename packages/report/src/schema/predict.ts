@@ -27,6 +27,8 @@ export const predictSchema = z
       kMax: z.number().describe('Å⁻¹'),
       s02: z.number(),
       e0: z.number().describe('eV; k_theory² = k² − e0/3.81'),
+      spheres: z.enum(['element', 'surroundings']),
+      electricVector: z.tuple([z.number(), z.number(), z.number()]).optional(),
       pathSignals: z.boolean(),
       bands: z.boolean(),
     }),
