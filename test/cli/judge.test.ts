@@ -69,6 +69,7 @@ test('--out writes the result and its tables, and the same again from the same i
   const out = join(folder, 'finding');
   expect(judge('--out', out).code).toBe(0);
   expect(readdirSync(join(out, 'tables')).sort()).toEqual([
+    '1-paths.csv',
     'candidates.csv',
     'disorder.csv',
     'distances.csv',

@@ -49,7 +49,7 @@ export function writeFolder(folder: string, files: ReadonlyMap<string, string | 
   } catch (error) {
     throw new UsageError(`cannot write to ${folder}: ${reasonOf(error)}`);
   } finally {
-    rmSync(staged, { recursive: true, force: true });
+    if (existsSync(staged)) rmSync(staged, { recursive: true, force: true });
   }
 }
 
