@@ -10,7 +10,7 @@ export default defineConfig({
     sourcemap: true,
     emptyOutDir: false,
     rollupOptions: {
-      input: { ringtrue: 'src/main.ts', 'ensemble-worker': 'src/ensemble-worker.ts' },
+      input: { ringtrue: 'src/main.ts', 'ensemble-worker': 'src/ensemble-worker.ts', 'sweep-worker': 'src/sweep-worker.ts' },
       output: { entryFileNames: '[name].js', chunkFileNames: '[name]-shared.js' },
     },
   },

@@ -1,34 +1,19 @@
 /** `ringtrue judge`: structures on trial against measured spectra. */
-import { existsSync } from 'node:fs';
 import { basename } from 'node:path';
-import {
-  type CandidateJudgement,
-  type Evidence,
-  type Judgement,
-  type JudgeOptions,
-  judge,
-  readStructure,
-  reduce,
-  VERSION,
-} from '@ringtrue/core';
+import { type CandidateJudgement, type Judgement, judge, readStructure, VERSION } from '@ringtrue/core';
 import { judgementFiles } from '@ringtrue/report';
-import { type Command, Option } from 'commander';
+import type { Command } from 'commander';
 import { aboutFile, runCommand, UsageError } from './command.js';
-import { addEvidenceOptions, type EvidenceFlags, notesOf, number, range, readScans, reduceOptionsOf } from './evidence-options.js';
+import { notesOf, reduceOptionsOf } from './evidence-options.js';
 import { readText } from './files.js';
 import { toJson } from './json.js';
+import { addJudgeOptions, each, evidenceOf, type JudgeFlags, judgeOptionsOf, scansOf } from './judge-options.js';
 import { dpi } from './png.js';
 import { showProgress } from './progress.js';
 import { candidateExtras, runRecord, writeResult } from './result-folder.js';
 import { plain, textTable } from './terminal.js';
 
-interface Flags extends EvidenceFlags, JudgeOptions {
-  readonly data: readonly string[];
-  readonly absorber: readonly string[];
-  readonly temperature?: readonly number[];
-  readonly kRange?: readonly (readonly [number, number])[];
-  readonly rRange?: readonly (readonly [number, number])[];
-  readonly kWeight?: readonly number[];
+interface Flags extends JudgeFlags {
   readonly png?: number;
 }
 
@@ -42,13 +27,8 @@ Repeated scans of one spectrum are joined by commas; each further --data is anot
 together with the first. Options that belong to a spectrum are given once for all of them, or once for each in the same order.
 A finding says consistent or not under what was assumed; it is never a proof.`;
 
-/** An option that may be given once a spectrum. */
-function each<T>(parse: (text: string) => T): (text: string, before?: readonly T[]) => readonly T[] {
-  return (text, before = []) => [...before, parse(text)];
-}
-
 export function addJudge(program: Command): void {
-  addEvidenceOptions(
+  addJudgeOptions(
     program
       .command('judge')
       .summary('is a structure consistent with measured data?')
@@ -61,37 +41,6 @@ export function addJudge(program: Command): void {
       )
       .requiredOption('--absorber <element>', 'absorbing element, or the label of one atom', each(String)),
   )
-    .option('--temperature <K>', 'temperature of the sample, K (default 300)', each(number))
-    .option('--k-range <from,to>', 'window in k, Å⁻¹ (default 3 to where the oscillations drown)', each(range))
-    .option('--r-range <from,to>', 'window in R, Å (default 1 to 1 Å below the radius, at most 4)', each(range))
-    .option('--k-weight <n>', 'power of k (default 3)', each(number))
-    .option('--rivals', 'judge rival structures made from each candidate too')
-    .addOption(
-      new Option('--thermal <model>', 'thermal disorder (default: what suits the structure)').choices([
-        'debye',
-        'einstein',
-        'springs',
-        'none',
-      ]),
-    )
-    .option('--debye-temperature <K>', 'Debye temperature, K (default: one is assumed, with a warning)', number)
-    .addOption(new Option('--self-energy <kind>', 'self-energy of the photoelectron').choices(['mean', 'hedin-lundqvist', 'dirac-hara']))
-    .option('--radius <angstrom>', 'longest half path length, Å (default 5)', number)
-    .option('--max-legs <n>', 'most legs of a path, 2 to 5 (default 4)', number)
-    .option('--coordinate-sd <angstrom>', 'standard uncertainty of every distance, Å (default: what the structure states)', number)
-    .option(
-      '--sample-spread <factor>',
-      'how much wider the sample may be than the coordinates: factor of the additional static disorder (default 1)',
-      number,
-    )
-    .option('--model-error <part>', 'part of the rms signal that even the right structure is missed by (default as calibrated)', number)
-    .addOption(
-      new Option('--sampling <when>', 'draw from the posterior instead of the Gaussian about its best point').choices([
-        'auto',
-        'always',
-        'never',
-      ]),
-    )
     .option('--out <folder>', 'write report (HTML, Markdown), figures, tables, references and result.json into a folder')
     .option('--png <dpi>', 'with --out: each figure as PNG too, 8 cm wide at so many dots per inch', dpi)
     .addHelpText('after', EXAMPLES)
@@ -106,11 +55,16 @@ async function run(files: readonly string[], flags: Flags): Promise<void> {
     return { file: basename(file), structure: aboutFile(file, () => readStructure(text, { fileName: file })) };
   });
   const progress = showProgress();
-  const judgement = judge(candidates, evidence, judgeOptionsOf(flags), {
-    version: VERSION,
-    now: () => performance.now() / 1000,
-    ...(progress ? { running: progress.running } : {}),
-  });
+  const judgement = judge(
+    candidates,
+    evidence,
+    { ...judgeOptionsOf(flags), bands: flags.json === true || flags.out !== undefined },
+    {
+      version: VERSION,
+      now: () => performance.now() / 1000,
+      ...(progress ? { running: progress.running } : {}),
+    },
+  );
   progress?.clear();
   const notes = notesOf([...judgement.warnings, ...judgement.candidates.flatMap(({ warnings }) => warnings)]);
   if (flags.out !== undefined) {
@@ -130,60 +84,6 @@ async function run(files: readonly string[], flags: Flags): Promise<void> {
   }
   const written = flags.out === undefined ? [] : [`Written to ${plain(flags.out)}`];
   process.stdout.write(`${[...summary(judgement), '', ...notes, ...written].join('\n')}\n`);
-}
-
-/** One data set for each --data, with its own or the common options. */
-function evidenceOf(flags: Flags): Evidence[] {
-  const sets = flags.data.length;
-  const pick = <T>(name: string, values: readonly T[] | undefined, s: number): T | undefined => {
-    if (values === undefined) return undefined;
-    if (values.length !== 1 && values.length !== sets)
-      throw new UsageError(`--${name}: give it once, or once for each of the ${sets} --data; got ${values.length}`);
-    return values.length === 1 ? values[0] : values[s];
-  };
-  return flags.data.map((data, s) => {
-    const files = scansOf(data);
-    const absorber = pick('absorber', flags.absorber, s)!;
-    const reduction = aboutFile(data, () => reduce(readScans(files, flags), { ...elementOf(absorber), ...reduceOptionsOf(flags) }));
-    const temperature = pick('temperature', flags.temperature, s);
-    const kRange = pick('k-range', flags.kRange, s);
-    const rRange = pick('r-range', flags.rRange, s);
-    const kWeight = pick('k-weight', flags.kWeight, s);
-    return {
-      file: files.map((file) => basename(file)).join(', '),
-      reduction,
-      absorber,
-      ...(flags.edge === undefined ? {} : { edge: flags.edge }),
-      ...(temperature === undefined ? {} : { temperature }),
-      ...(kRange === undefined ? {} : { kRange }),
-      ...(rRange === undefined ? {} : { rRange }),
-      ...(kWeight === undefined ? {} : { kWeight }),
-    };
-  });
-}
-
-/** A file whose own name has a comma is one file. */
-const scansOf = (data: string): string[] => (existsSync(data) ? [data] : data.split(',').filter((file) => file !== ''));
-
-/** Raw absorption wants its element: it is the absorber's, where that is named by element. */
-const elementOf = (absorber: string): { element?: string } => (/^[A-Z][a-z]?$/.test(absorber) ? { element: absorber } : {});
-
-function judgeOptionsOf(flags: Flags): JudgeOptions {
-  const { thermal, debyeTemperature, selfEnergy, radius, maxLegs, rivals, coordinateSd, sampleSpread, modelError, sampling, json, out } =
-    flags;
-  return {
-    ...(thermal === undefined ? {} : { thermal }),
-    ...(debyeTemperature === undefined ? {} : { debyeTemperature }),
-    ...(selfEnergy === undefined ? {} : { selfEnergy }),
-    ...(radius === undefined ? {} : { radius }),
-    ...(maxLegs === undefined ? {} : { maxLegs }),
-    ...(rivals === undefined ? {} : { rivals }),
-    ...(coordinateSd === undefined ? {} : { coordinateSd }),
-    ...(sampleSpread === undefined ? {} : { sampleSpread }),
-    ...(modelError === undefined ? {} : { modelError }),
-    ...(sampling === undefined ? {} : { sampling }),
-    bands: json === true || out !== undefined,
-  };
 }
 
 function summary({ evidence, candidates, groups, timing }: Judgement): string[] {

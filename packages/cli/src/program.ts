@@ -7,6 +7,7 @@ import { addPredict } from './predict.js';
 import { addReduce } from './reduce.js';
 import { addServe } from './serve.js';
 import { addSites } from './sites.js';
+import { addSweep } from './sweep.js';
 import { plain } from './terminal.js';
 
 export function ringtrueProgram(): Command {
@@ -23,6 +24,7 @@ export function ringtrueProgram(): Command {
   addReduce(program);
   addDose(program);
   addSites(program);
+  addSweep(program);
   addServe(program);
   return program;
 }
