@@ -2,11 +2,13 @@
  * The full calibration: every system, k_max, noise and coordinate error, to results.json beside this file.
  *
  *   npm run calibrate [-- --scale 0.2]      scale: part of the trials, for a quick look
+ *   npm run calibrate -- --table            only the page of the documentation, from the results that stand
  */
-import { readFileSync, writeFileSync } from 'node:fs';
+import { writeFileSync } from 'node:fs';
 import { fileURLToPath } from 'node:url';
 import { MODEL_ERROR } from '../../packages/core/src/judgement/model-error.js';
 import { calibrationSystem } from './systems.js';
+import { writeCalibrationPage } from './table.js';
 import { type CellResult, runCell } from './trials.js';
 
 const FILE = fileURLToPath(new URL('results.json', import.meta.url));
@@ -18,6 +20,10 @@ const GRID = [10, 12, 14].flatMap((kMax) =>
 const HEADLINE = { kMax: 12, noise: 0.02, coordinateSd: 0.02 };
 const HEADLINE_FACTOR = 3;
 
+if (process.argv.includes('--table')) {
+  writeCalibrationPage();
+  process.exit();
+}
 const at = process.argv.indexOf('--scale');
 const scale = at < 0 ? 1 : Number(process.argv[at + 1]);
 const cells: CellResult[] = [];
@@ -32,4 +38,5 @@ for (const [s, name] of (['monomer', 'dimer', 'crystal'] as const).entries()) {
     writeFileSync(FILE, `${JSON.stringify({ command: 'npm run calibrate', scale, modelError: MODEL_ERROR, cells }, null, 1)}\n`);
   }
 }
-process.stdout.write(`${JSON.parse(readFileSync(FILE, 'utf8')).cells.length} cells written\n`);
+writeCalibrationPage();
+process.stdout.write(`${cells.length} cells written\n`);

@@ -25,9 +25,9 @@ export function redoxinLike(lengthen = 0): Structure {
 /** χ(k) of a structure with given energy origin and S0², and white noise, as a ready scan. */
 export function inventedScan(
   structure: Structure,
-  { e0 = 3, s02 = 0.82, noise = 0.0005, seed = 1, kMax = 13, temperature = 10 } = {},
+  { e0 = 3, s02 = 0.82, noise = 0.0005, seed = 1, kMax = 13, temperature = 10, absorber = 'Fe' } = {},
 ): MeasuredScan {
-  const options = { absorber: 'Fe', thermal: 'springs', temperature, e0, s02, kMax, radius: 4.5 } as const;
+  const options = { absorber, thermal: 'springs', temperature, e0, s02, kMax, radius: 4.5 } as const;
   const { k, chi } = predict(structure, options, { file: 'truth', version: '' });
   const normal = normalDeviates(seed);
   const first = k.findIndex((value) => value >= 0.5);

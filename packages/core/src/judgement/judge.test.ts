@@ -125,6 +125,25 @@ describe('rivals and ranking', () => {
   });
 });
 
+test('two absorbers of one sample are judged together and share the distance between them', () => {
+  // an invented pair of metals under oxygens
+  const pair = readStructure(
+    '9\ninvented\nFe 0 0 0\nMn 3.1 0 0\nO 1.55 1.05 0\nO 1.55 -1.05 0\nO -1.2 0 1.6\nO -1.2 0 -1.6\nO 4.3 0 1.7\nO 4.3 0 -1.7\nO 0 0.2 -2.3\n',
+  );
+  const of = (absorber: 'Fe' | 'Mn'): Evidence => ({
+    ...evidence,
+    file: absorber,
+    absorber,
+    reduction: inventedReduction(pair, { absorber }),
+  });
+  const joint = judge([{ file: 'pair.xyz', structure: pair }], [of('Fe'), of('Mn')], options, context).candidates[0]!;
+  expect(joint.finding).toMatch(/^consistent/);
+  expect(joint.parameters.filter(({ name }) => name === 'energy-origin')).toHaveLength(2);
+  const between = joint.parameters.filter(({ name, shell }) => name === 'scatterer-shift' && / at 3\.10 Å/.test(shell));
+  expect(between).toHaveLength(1);
+  expect(joint.overlength.shells.filter(({ label }) => label.includes('first shell'))).toHaveLength(2);
+});
+
 describe('refused, with what would be right', () => {
   test('candidate without the absorber, by name', () => {
     expect(() => judgeOne(readStructure('2\nx\nMn 0 0 0\nO 0 0 1.9\n'))).toThrow(/candidate\.xyz: .*there is no Fe/);
