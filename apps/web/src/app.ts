@@ -1,33 +1,44 @@
-/** The page: a structure and a few choices on the left, its predicted spectrum beside them. */
-import type { Prediction } from '@ringtrue/core';
-import { chiInK, chiInR } from '@ringtrue/figures';
+/** The page: candidates, evidence and a few choices on the left; prediction or finding beside them. */
+import type { Judgement, Prediction } from '@ringtrue/core';
 import { css, html, LitElement, nothing, type TemplateResult } from 'lit';
 import { customElement, state } from 'lit/decorators.js';
-import { unsafeSVG } from 'lit/directives/unsafe-svg.js';
 import tideglass from '../../../demo-structures/tideglass.cif?raw';
 import { Computing } from './computing.js';
-
-interface Candidate {
-  readonly file: string;
-  readonly text: string;
-}
+import './drop-zone.js';
+import { FINDING_MARKS } from './finding-marks.js';
+import './prediction-view.js';
+import type { TextFile } from './worker.js';
 
 /** Larger files are refused before they are read, bytes. */
 const LARGEST_FILE = 100e6;
 
+/** "3,12" as a range; nothing for an empty text. @throws {Error} what is wanted */
+function rangeOf(what: string, text: string): readonly [number, number] | undefined {
+  if (text === '') return undefined;
+  const [from, to, ...more] = text.split(/[,;\s]+/).map(Number);
+  if (!(from! < to!) || more.length > 0) throw new Error(`the ${what} wants two rising numbers like 3,12; got "${text}"`);
+  return [from!, to!];
+}
+
 @customElement('rt-app')
 export class App extends LitElement {
-  @state() private candidate: Candidate | undefined;
+  @state() private candidates: readonly TextFile[] = [];
+  /** Name of the candidate that is shown and predicted. */
+  @state() private shown = '';
+  @state() private scans: readonly TextFile[] = [];
+  @state() private judgement: Judgement | undefined;
+  @state() private rivals = false;
+  @state() private kRange = '';
+  @state() private rRange = '';
   @state() private absorber = '';
   @state() private edge: 'K' | 'L3' | 'L2' | 'L1' = 'K';
-  @state() private thermal: 'debye' | 'springs' = 'debye';
+  @state() private thermal: 'suited' | 'debye' | 'springs' = 'suited';
   @state() private temperature = 300;
   @state() private debyeTemperature: number | undefined;
   @state() private radius = 5;
   @state() private running = false;
   @state() private fault: string | undefined;
   @state() private prediction: Prediction | undefined;
-  @state() private dropping = false;
   private readonly computing = new Computing();
 
   protected override render(): TemplateResult {
@@ -38,11 +49,17 @@ export class App extends LitElement {
       </header>
       <main>
         <section class="inputs" aria-label="Candidate and conditions">
-          ${this.renderDrop()} ${this.renderChoices()}
+          ${this.renderCandidates()} ${this.renderEvidence()} ${this.renderChoices()}
         </section>
         <section class="result" aria-label="Prediction" aria-live="polite">
           ${this.fault ? html`<p class="fault" role="alert">${this.fault}</p>` : nothing}
-          ${this.prediction ? this.renderPrediction(this.prediction) : this.renderEmpty()}
+          ${
+            this.judgement
+              ? html`<rt-finding-view .judgement=${this.judgement} shown=${this.shown}></rt-finding-view>`
+              : this.prediction
+                ? html`<rt-prediction-view .prediction=${this.prediction}></rt-prediction-view>`
+                : this.renderEmpty()
+          }
         </section>
       </main>
       <footer>
@@ -52,34 +69,54 @@ export class App extends LitElement {
     `;
   }
 
-  private renderDrop(): TemplateResult {
+  private get candidate(): TextFile | undefined {
+    return this.candidates.find(({ file }) => file === this.shown);
+  }
+
+  private renderCandidates(): TemplateResult {
     return html`
-      <div
-        class=${this.dropping ? 'drop over' : 'drop'}
-        @dragover=${(event: DragEvent) => {
-          event.preventDefault();
-          this.dropping = true;
-        }}
-        @dragleave=${() => {
-          this.dropping = false;
-        }}
-        @drop=${(event: DragEvent) => {
-          event.preventDefault();
-          this.dropping = false;
-          void this.take(event.dataTransfer?.files[0]);
-        }}
-      >
-        <strong>${this.candidate ? this.candidate.file : 'Drop a structure here'}</strong>
-        <span>XYZ, PDB, mmCIF or CIF</span>
-        <label class="file"
-          >Or choose a file
-          <input
-            type="file"
-            @change=${(event: Event) => void this.take((event.target as HTMLInputElement).files?.[0])}
-          />
-        </label>
+      <rt-drop-zone name="Drop structures here" hint="XYZ, PDB, mmCIF or CIF" @rt-files=${(event: CustomEvent<File[]>) => void this.take(event.detail)}>
         <button type="button" class="plain" @click=${this.showExample}>Show the invented example</button>
-      </div>
+        <button type="button" class="plain" @click=${this.judgeExample}>Judge the invented oxidase</button>
+      </rt-drop-zone>
+      ${
+        this.candidates.length > 0
+          ? html`<ul class="cards" aria-label="Candidates">
+              ${this.candidates.map(({ file }) => {
+                const finding = this.judgement?.candidates.find((judged) => judged.file === file)?.finding;
+                return html`<li>
+                  <button type="button" class="card" aria-pressed=${file === this.shown ? 'true' : 'false'} @click=${() => this.show(file)}>
+                    <strong>${file}</strong>
+                    ${finding ? html`<span>${FINDING_MARKS[finding][0]} ${FINDING_MARKS[finding][1]}</span>` : nothing}
+                  </button>
+                  <button type="button" class="plain remove" aria-label=${`Remove ${file}`} @click=${() => this.takeAway(file)}>✕</button>
+                </li>`;
+              })}
+            </ul>`
+          : nothing
+      }
+    `;
+  }
+
+  private renderEvidence(): TemplateResult {
+    return html`
+      <rt-drop-zone name="Drop measured scans here" hint="Raw absorption or χ(k): repeats of one spectrum" @rt-files=${(event: CustomEvent<File[]>) => void this.takeScans(event.detail)}>
+      </rt-drop-zone>
+      ${
+        this.scans.length > 0
+          ? html`<ul class="cards" aria-label="Evidence">
+              ${this.scans.map(
+                ({ file }) => html`<li>
+                  <span class="card">${file}</span>
+                  <button type="button" class="plain remove" aria-label=${`Remove ${file}`} @click=${() => {
+                    this.scans = this.scans.filter((scan) => scan.file !== file);
+                    this.judgement = undefined;
+                  }}>✕</button>
+                </li>`,
+              )}
+            </ul>`
+          : nothing
+      }
     `;
   }
 
@@ -148,7 +185,7 @@ export class App extends LitElement {
               this.thermal = (event.target as HTMLSelectElement).value as typeof this.thermal;
             }}
           >
-            ${(['debye', 'springs'] as const).map((model) => html`<option value=${model} ?selected=${model === this.thermal}>${model === 'debye' ? 'Debye' : 'springs'}</option>`)}
+            ${(['suited', 'debye', 'springs'] as const).map((model) => html`<option value=${model} ?selected=${model === this.thermal}>${{ suited: 'as suits', debye: 'Debye', springs: 'springs' }[model]}</option>`)}
           </select>
           <span class="unit"></span>
         </label>
@@ -161,13 +198,44 @@ export class App extends LitElement {
         ${numeric('Radius', 'Å', this.radius, 1, 12, (value) => {
           this.radius = value ?? 5;
         })}
+        ${this.renderRange('Window in k', 'Å⁻¹', this.kRange, 'as far as it tells', (value) => {
+          this.kRange = value;
+        })}
+        ${this.renderRange('Window in R', 'Å', this.rRange, '1,4', (value) => {
+          this.rRange = value;
+        })}
+        <label class="check">
+          <span>Judge rivals too</span>
+          <input
+            type="checkbox"
+            .checked=${this.rivals}
+            @change=${(event: Event) => {
+              this.rivals = (event.target as HTMLInputElement).checked;
+            }}
+          />
+        </label>
         ${
           this.running
             ? html`<button type="button" @click=${this.cancel}>Cancel</button>`
-            : html`<button type="submit" ?disabled=${!this.candidate}>Predict</button>`
+            : html`<button type="submit" ?disabled=${!this.candidate}>Predict</button>
+                <button type="button" ?disabled=${this.candidates.length === 0 || this.scans.length === 0} @click=${() => void this.judge()}>Judge</button>`
         }
       </form>
     `;
+  }
+
+  private renderRange(label: string, unit: string, value: string, placeholder: string, set: (value: string) => void): TemplateResult {
+    return html`<label>
+      <span>${label}</span>
+      <input
+        type="text"
+        inputmode="decimal"
+        placeholder=${placeholder}
+        .value=${value}
+        @change=${(event: Event) => set((event.target as HTMLInputElement).value.trim())}
+      />
+      <span class="unit">${unit}</span>
+    </label>`;
   }
 
   private renderEmpty(): TemplateResult {
@@ -175,77 +243,102 @@ export class App extends LitElement {
       ${
         this.running
           ? 'Computing atoms, potentials and phase shifts …'
-          : 'The predicted χ(k) and its transform appear here: drop a structure on the left, name the absorbing element, and press Predict. The invented example needs one press.'
+          : 'Drop structures and measured scans on the left, name the absorbing element, and press Judge: the finding appears here. Predict needs a structure alone. The invented oxidase needs one press.'
       }
     </p>`;
   }
 
-  private renderPrediction(prediction: Prediction): TemplateResult {
-    const { structure, absorbers, shells, warnings, timing } = prediction;
-    return html`
-      <h2>${structure.file}</h2>
-      <p class="quiet">
-        ${structure.title ? html`${structure.title} · ` : nothing}${absorbers.length} absorbing
-        ${absorbers.length === 1 ? 'site' : 'sites'} of ${prediction.options.absorber} · computed in ${timing.total.toFixed(2)} s
-      </p>
-      <div class="figures">
-        <figure>
-          ${unsafeSVG(chiInK(prediction))}
-          <figcaption>Line: the prediction. Bands: 68 % and 95 % of what it may be, before any data are seen.</figcaption>
-        </figure>
-        <figure>${unsafeSVG(chiInR(prediction))}</figure>
-      </div>
-      <div class="scroll" tabindex="0" role="region" aria-label="Shells">
-        <table>
-          <thead>
-            <tr>
-              <th scope="col">Shell</th>
-              <th scope="col">N</th>
-              <th scope="col">mean R (Å)</th>
-              <th scope="col">thermal σ² (Å²)</th>
-              <th scope="col">static σ² (Å²)</th>
-              <th scope="col">share</th>
-            </tr>
-          </thead>
-          <tbody>
-            ${shells.map(
-              ({ label, count, meanDistance, sigma2, share }) => html`<tr>
-                <th scope="row">${label}</th>
-                <td>${count.toFixed(1)}</td>
-                <td>${meanDistance.toFixed(4)}</td>
-                <td>${sigma2.thermal.toFixed(5)}</td>
-                <td>${sigma2.static.toFixed(5)}</td>
-                <td>${(100 * share).toFixed(1)} %</td>
-              </tr>`,
-            )}
-          </tbody>
-        </table>
-      </div>
-      ${warnings.length ? html`<ul class="notes">${warnings.map(({ message }) => html`<li>${message}</li>`)}</ul>` : nothing}
-    `;
+  private async take(files: readonly File[]): Promise<void> {
+    const taken = await this.textsOf(files);
+    if (taken.length === 0) return;
+    const names = new Set(taken.map(({ file }) => file));
+    this.candidates = [...this.candidates.filter(({ file }) => !names.has(file)), ...taken];
+    this.shown = taken.at(-1)!.file;
   }
 
-  private async take(file: File | undefined): Promise<void> {
-    if (!file) return;
+  private async takeScans(files: readonly File[]): Promise<void> {
+    const taken = await this.textsOf(files);
+    const names = new Set(taken.map(({ file }) => file));
+    this.scans = [...this.scans.filter(({ file }) => !names.has(file)), ...taken];
+  }
+
+  /** Files as text; what is too large is told and left out. What stood here no longer belongs to what is chosen. */
+  private async textsOf(files: readonly File[]): Promise<TextFile[]> {
     this.cancel();
     this.prediction = undefined;
-    if (file.size > LARGEST_FILE) {
-      this.candidate = undefined;
-      this.fault = `${file.name}: ${Math.round(file.size / 1e6)} MB is more than the ${LARGEST_FILE / 1e6} MB that are read here; cut out the part around the absorber.`;
-      return;
-    }
+    this.judgement = undefined;
     this.fault = undefined;
-    this.candidate = { file: file.name, text: await file.text() };
+    const texts: TextFile[] = [];
+    for (const file of files) {
+      if (file.size > LARGEST_FILE)
+        this.fault = `${file.name}: ${Math.round(file.size / 1e6)} MB is more than the ${LARGEST_FILE / 1e6} MB that are read here; cut out the part around the absorber.`;
+      else texts.push({ file: file.name, text: await file.text() });
+    }
+    return texts;
+  }
+
+  private show(file: string): void {
+    if (this.shown !== file) this.prediction = undefined;
+    this.shown = file;
+  }
+
+  private takeAway(file: string): void {
+    this.candidates = this.candidates.filter((candidate) => candidate.file !== file);
+    this.judgement = undefined;
+    this.prediction = undefined;
+    if (this.shown === file) this.shown = this.candidates.at(-1)?.file ?? '';
   }
 
   private readonly showExample = (): void => {
-    this.candidate = { file: 'tideglass.cif', text: tideglass };
+    this.candidates = [{ file: 'tideglass.cif', text: tideglass }];
+    this.shown = 'tideglass.cif';
+    this.scans = [];
     this.absorber = 'Mn';
     this.edge = 'K';
     this.temperature = 15;
     this.debyeTemperature = 500;
     void this.run();
   };
+
+  private readonly judgeExample = async (): Promise<void> => {
+    const { EXAMPLE } = await import('./oxidase-example.js');
+    this.candidates = EXAMPLE.candidates;
+    this.scans = EXAMPLE.scans;
+    this.shown = EXAMPLE.candidates[0].file;
+    this.absorber = 'Mn';
+    this.edge = 'K';
+    this.temperature = 15;
+    this.debyeTemperature = undefined;
+    await this.judge();
+  };
+
+  private async judge(): Promise<void> {
+    this.running = true;
+    this.fault = undefined;
+    this.judgement = undefined;
+    this.prediction = undefined;
+    try {
+      const { absorber, edge, temperature, radius, thermal, debyeTemperature, rivals } = this;
+      const [kRange, rRange] = [rangeOf('window in k', this.kRange), rangeOf('window in R', this.rRange)];
+      // what draws the finding comes with it: a first look at the page does not pay for it
+      const [outcome] = await Promise.all([
+        this.computing.judge(
+          this.candidates,
+          this.scans,
+          { absorber, edge, temperature, ...(kRange ? { kRange } : {}), ...(rRange ? { rRange } : {}) },
+          { radius, rivals, ...(thermal === 'suited' ? {} : { thermal }), ...(debyeTemperature === undefined ? {} : { debyeTemperature }) },
+        ),
+        import('./finding-view.js'),
+      ]);
+      if (!outcome) return;
+      this.running = false;
+      if ('fault' in outcome) this.fault = outcome.fault;
+      else this.judgement = outcome.judgement;
+    } catch (error) {
+      this.running = false;
+      this.fault = error instanceof Error ? error.message : String(error);
+    }
+  }
 
   private readonly cancel = (): void => {
     this.computing.cancel();
@@ -257,12 +350,13 @@ export class App extends LitElement {
     this.running = true;
     this.fault = undefined;
     this.prediction = undefined;
+    this.judgement = undefined;
     const { absorber, edge, thermal, temperature, debyeTemperature, radius } = this;
     const { file, text } = this.candidate;
     const conditions = {
       absorber,
       edge,
-      thermal,
+      thermal: thermal === 'suited' ? ('debye' as const) : thermal,
       temperature,
       radius,
       bands: true,
@@ -289,14 +383,16 @@ export class App extends LitElement {
     h1 { font-size: 1.35rem; font-weight: 650; letter-spacing: 0.01em; margin: 0; }
     h2 { font-size: 1.15rem; margin: 0; overflow-wrap: anywhere; }
     p { margin: 0.2rem 0; }
-    header p, .quiet, footer, .unit, .drop span { color: var(--quiet); }
+    header p, .quiet, footer, .unit { color: var(--quiet); }
     main { display: grid; grid-template-columns: 19rem minmax(0, 1fr); gap: 1.5rem; padding: 1.25rem 0; }
     @media (max-width: 900px) { main { grid-template-columns: 1fr; } }
-    .drop { display: flex; flex-direction: column; gap: 0.5rem; padding: 1rem; border: 1.5px dashed var(--rule); border-radius: 6px; background: var(--panel); }
-    .drop strong { overflow-wrap: anywhere; }
-    .drop.over { border-color: var(--accent); }
-    .file { color: var(--accent); text-decoration: underline; cursor: pointer; }
-    .file input { display: block; width: 100%; margin-top: 0.25rem; font: inherit; color: var(--ink); }
+    .cards { list-style: none; margin: 0.5rem 0; padding: 0; display: grid; gap: 0.35rem; }
+    .cards li { display: grid; grid-template-columns: 1fr auto; gap: 0.35rem; }
+    .card { display: flex; flex-direction: column; text-align: left; font-weight: 400; color: var(--ink); background: var(--panel); border: 1px solid var(--rule); border-radius: 4px; padding: 0.4rem 0.6rem; overflow-wrap: anywhere; min-width: 0; }
+    .card[aria-pressed='true'] { border-color: var(--accent); box-shadow: inset 3px 0 0 var(--accent); }
+    button.remove { padding: 0.2rem 0.5rem; border-color: var(--rule); color: var(--quiet); }
+    rt-drop-zone { display: block; margin-bottom: 0.75rem; }
+    form label.check { grid-template-columns: 1fr auto; }
     form { display: grid; gap: 0.6rem; margin-top: 1rem; }
     form label { display: grid; grid-template-columns: 1fr 5.5rem 3.6rem; align-items: center; gap: 0.5rem; }
     input, select { font: inherit; color: inherit; background: var(--panel); border: 1px solid var(--rule); border-radius: 4px; padding: 0.3rem 0.45rem; min-width: 0; }
@@ -304,21 +400,8 @@ export class App extends LitElement {
     button.plain { background: none; color: var(--accent); }
     button:disabled { opacity: 0.55; cursor: default; }
     :is(button, input, select, .scroll):focus-visible { outline: 2px solid var(--accent); outline-offset: 2px; }
-    .figures { display: grid; grid-template-columns: repeat(auto-fit, minmax(24rem, 1fr)); gap: 1rem; margin: 0.75rem 0; }
-    figure { margin: 0; padding: 0.5rem; background: var(--panel); border: 1px solid var(--rule); border-radius: 6px; }
-    figcaption {
-      color: var(--quiet);
-      font-size: 0.85rem;
-    }
-    svg { display: block; width: 100%; height: auto; }
-    .scroll { overflow-x: auto; }
-    table { border-collapse: collapse; width: 100%; font-variant-numeric: tabular-nums; }
-    th, td { padding: 0.3rem 0.6rem; text-align: right; border-bottom: 1px solid var(--rule); font-weight: 400; white-space: nowrap; }
-    thead th { color: var(--quiet); }
-    th:first-child { text-align: left; }
     .fault { color: var(--warn); border-left: 3px solid var(--warn); padding-left: 0.75rem; overflow-wrap: anywhere; }
     .empty { max-width: 34rem; color: var(--quiet); padding-top: 1rem; }
-    .notes { color: var(--quiet); padding-left: 1.1rem; }
     footer { border-top: 1px solid var(--rule); padding: 0.75rem 0 1.5rem; font-size: 0.9rem; }
   `;
 }

@@ -8,7 +8,16 @@ export class Computing {
   private stop: (() => void) | undefined;
 
   /** Resolves with the outcome, or undefined when the run was cancelled. */
-  async predict(...input: Parameters<WorkerApi['predict']>): Promise<ReturnType<WorkerApi['predict']> | undefined> {
+  predict(...input: Parameters<WorkerApi['predict']>): Promise<ReturnType<WorkerApi['predict']> | undefined> {
+    return this.run(async (remote) => remote.predict(...input));
+  }
+
+  /** As `predict`. */
+  judge(...input: Parameters<WorkerApi['judge']>): Promise<ReturnType<WorkerApi['judge']> | undefined> {
+    return this.run(async (remote) => remote.judge(...input));
+  }
+
+  private async run<T>(work: (remote: Remote<WorkerApi>) => Promise<T>): Promise<T | undefined> {
     this.cancel();
     this.worker ??= new Worker(new URL('./worker.ts', import.meta.url), { type: 'module' });
     this.remote ??= wrap<WorkerApi>(this.worker);
@@ -18,7 +27,7 @@ export class Computing {
       worker.onerror = () => reject(new Error('the part of the page that computes could not be started or broke off; reload the page'));
     });
     try {
-      return await Promise.race([remote.predict(...input), ended]);
+      return await Promise.race([work(remote), ended]);
     } catch (error) {
       this.discard();
       throw error;
