@@ -22,7 +22,7 @@ export interface Evidence {
   readonly temperature?: number;
   /** Å⁻¹; default 3 to where the oscillations drown. */
   readonly kRange?: readonly [number, number];
-  /** Å, of the transform; default 1 to the radius of the paths less 0.5, at most 4.5. */
+  /** Å, of the transform; default 1 to 1 Å below the radius of the paths, at most 4. */
   readonly rRange?: readonly [number, number];
   /** Default 3. */
   readonly kWeight?: number;
