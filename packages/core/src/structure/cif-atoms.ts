@@ -104,7 +104,7 @@ export class AtomRows {
     const u = this.optional(get('u_iso_or_equiv'), 'U', line);
     const b = this.optional(get('b_iso_or_equiv'), 'B', line);
     const uIso = u ?? (b === undefined ? undefined : b / (8 * Math.PI ** 2));
-    const residue = this.residueOf(get);
+    const residue = this.residueOf(get, line);
     // Set one by one, not spread together: this runs a million times.
     const draft: { -readonly [Key in keyof Draft]: Draft[Key] } = {
       name: this.intern(label),
@@ -205,11 +205,12 @@ export class AtomRows {
     return clampOccupancy(value, label, line, this.diagnostics);
   }
 
-  private residueOf(get: (name: Name) => CifValue): Residue | undefined {
+  private residueOf(get: (name: Name) => CifValue, line: number): Residue | undefined {
     const name = get('auth_comp_id') ?? get('label_comp_id');
     if (name === undefined) return undefined;
     const chain = get('auth_asym_id') ?? get('label_asym_id') ?? '';
-    const number = Number(get('auth_seq_id') ?? get('label_seq_id') ?? Number.NaN);
+    const digits = get('auth_seq_id') ?? get('label_seq_id');
+    const number = digits === undefined ? Number.NaN : Number(digits);
     const insertion = get('pdbx_pdb_ins_code') ?? '';
     const last = this.residue;
     const same =
@@ -219,6 +220,13 @@ export class AtomRows {
       last.insertion === insertion &&
       (last.number === number || (Number.isNaN(number) && last.number === 0));
     if (same) return last;
+    if (digits !== undefined && Number.isNaN(number)) {
+      this.diagnostics.push({
+        code: 'bad-residue-number',
+        message: `line ${line}: "${digits}" is no residue number; 0 is shown in its place`,
+        line,
+      });
+    }
     this.residue = { name: this.intern(name), number: Number.isNaN(number) ? 0 : number, insertion, chain: this.intern(chain) };
     return this.residue;
   }

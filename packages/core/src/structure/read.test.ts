@@ -120,3 +120,20 @@ test('a PDB file: hexagonal cell by the archive’s name, unknown group refused 
   expect(() => readStructure(text.replace('H 3 2', 'Q 3 2'))).toThrow(/^line 1, columns 56–66: the space group "Q 3 2" is not known/);
   expect(() => readStructure(text.replace('150.000', '150.0x0'))).toThrow(/^line 1, columns 25–33/);
 });
+
+test('an mmCIF residue number that is none is said with its line, once a residue', () => {
+  const text = [
+    'data_x',
+    'loop_',
+    ...'group_PDB id type_symbol label_atom_id label_comp_id label_asym_id auth_seq_id Cartn_x Cartn_y Cartn_z occupancy'
+      .split(' ')
+      .map((name) => `_atom_site.${name}`),
+    'HETATM 1 Zn ZN ZNC A 1x2 0 0 0 1',
+    'HETATM 2 O O1 ZNC A 1x2 2 0 0 1',
+    'HETATM 3 O O HOH A . 0 2 0 1',
+  ].join('\n');
+  const { diagnostics, atoms } = readStructure(text);
+  expect(atoms).toHaveLength(3);
+  const said = diagnostics.filter(({ code }) => code === 'bad-residue-number');
+  expect(said).toMatchObject([{ line: 14, message: expect.stringContaining('"1x2" is no residue number') }]);
+});
