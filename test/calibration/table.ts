@@ -62,7 +62,7 @@ export function calibrationPage(): string {
   return `# Calibration of the judgement
 
 Made by \`${command}\` (${scale} of the full number of trials) from invented sites: nothing here was measured. Model error ${modelError} in the
-truths and in the judge. Truths are explicit ensembles of 150 displaced copies each; what is unknown to the judge is drawn from what it
+truths and in the judge. Truths are explicit ensembles of 600 displaced copies each; what is unknown to the judge is drawn from what it
 expects; displacements come from force constants of their own. k from 3 Å⁻¹, k³, R ${'1 to 3.5 Å'}; noise and model error are parts of the
 rms of the transform in the window; coordinates: standard deviation of every distance. ${all} true candidates, as many overlong ones.
 
